@@ -1,0 +1,26 @@
+package smoothers
+
+// A Family is a kind of smoother.
+//
+// The options of a family are the exported fields of the struct that New returns,
+// set to their defaults and described by tags:
+//
+//	option:"degree"          the name in the study file and on the command line
+//	doc:"…"                  one line for people
+//	oneof:"a b c"            the allowed words of a string
+//	min, max, above, below   bounds of a number, the last two exclusive
+//
+// The study-file parser, the describe command, the flags of fit and the tests all
+// read these tags, so they cannot disagree.
+type Family struct {
+	Name     string          // the word for it in the study file
+	Doc      string          // one line for people
+	Tuning   string          // what Rung.Tuning means
+	LowestDF float64         // smallest df the defaults attain on a good design
+	New      func() Smoother // a pointer to the options struct, at its defaults
+}
+
+// Families returns all families in the order in which they are listed to people.
+func Families() []Family {
+	return []Family{}
+}
