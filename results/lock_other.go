@@ -1,0 +1,34 @@
+//go:build !unix
+
+package results
+
+import (
+	"errors"
+	"io/fs"
+	"os"
+)
+
+var errLocked = errors.New("locked by another process")
+
+// A lock is a file that no one else may open; the system removes nothing after a
+// crash, so where one is left behind it has to be deleted by hand.
+type lock struct {
+	file *os.File
+	path string
+}
+
+func takeLock(path string) (*lock, error) {
+	f, err := os.OpenFile(path, os.O_CREATE|os.O_EXCL|os.O_RDWR, 0o644)
+	if errors.Is(err, fs.ErrExist) {
+		return nil, errLocked
+	}
+	if err != nil {
+		return nil, err
+	}
+	return &lock{f, path}, nil
+}
+
+func (l *lock) release() error {
+	l.file.Close()
+	return os.Remove(l.path)
+}

@@ -1,0 +1,177 @@
+package results
+
+import (
+	"bytes"
+	"crypto/sha256"
+	"encoding/binary"
+	"errors"
+	"fmt"
+	"io"
+	"io/fs"
+	"os"
+	"path/filepath"
+
+	"github.com/apache/arrow/go/v17/arrow/array"
+	"github.com/apache/arrow/go/v17/arrow/ipc"
+	"github.com/apache/arrow/go/v17/arrow/memory"
+	"github.com/klauspost/compress/zstd"
+)
+
+// A Part is what one unit of work yields.
+type Part struct {
+	Fits  []Fit
+	Picks []Pick
+}
+
+// A BrokenPartError says that a part file is not what was written. The unit is to
+// be worked again.
+type BrokenPartError struct {
+	Path   string
+	Reason string
+}
+
+func (e *BrokenPartError) Error() string { return fmt.Sprintf("%s: broken part: %s", e.Path, e.Reason) }
+
+// A part file is partMagic, the SHA-256 hash of all that follows, and, compressed by
+// zstd, the length of the fits and the two tables as Arrow streams. Parquet would
+// take thirty times as long for so few rows.
+const partMagic = "bendtest part 1\n"
+
+const partHead = len(partMagic) + sha256.Size
+
+// maxPart bounds what a part may unpack to.
+const maxPart = 1 << 32
+
+// encode returns the bytes of a part file.
+func (p *Part) encode() ([]byte, error) {
+	var fits, picks bytes.Buffer
+	if err := writeStream(Fits, &fits, p.Fits); err != nil {
+		return nil, err
+	}
+	if err := writeStream(Picks, &picks, p.Picks); err != nil {
+		return nil, err
+	}
+	plain := binary.BigEndian.AppendUint64(nil, uint64(fits.Len()))
+	plain = append(plain, fits.Bytes()...)
+	plain = append(plain, picks.Bytes()...)
+	packer, err := zstd.NewWriter(nil, zstd.WithEncoderLevel(zstd.SpeedFastest), zstd.WithEncoderConcurrency(1))
+	if err != nil {
+		return nil, err
+	}
+	data := append([]byte(partMagic), make([]byte, sha256.Size)...)
+	data = packer.EncodeAll(plain, data)
+	sum := sha256.Sum256(data[partHead:])
+	copy(data[len(partMagic):], sum[:])
+	return data, nil
+}
+
+// writeStream writes rows as an Arrow stream of one record.
+func writeStream[R any](t *Table[R], w io.Writer, rows []R) error {
+	schema := t.arrowSchema()
+	builder := array.NewRecordBuilder(memory.DefaultAllocator, schema)
+	defer builder.Release()
+	for i := range rows {
+		if err := t.appendRow(builder, &rows[i]); err != nil {
+			return fmt.Errorf("table %s, row %d, %w", t.Name, i, err)
+		}
+	}
+	record := builder.NewRecord()
+	defer record.Release()
+	out := ipc.NewWriter(w, ipc.WithSchema(schema))
+	if err := out.Write(record); err != nil {
+		return err
+	}
+	return out.Close()
+}
+
+// readStream calls yield with each row of an Arrow stream.
+func readStream[R any](t *Table[R], data []byte, yield func(*R) error) error {
+	in, err := ipc.NewReader(bytes.NewReader(data))
+	if err != nil {
+		return err
+	}
+	defer in.Release()
+	for in.Next() {
+		if err := t.rows(in.Record(), yield); err != nil {
+			return err
+		}
+	}
+	return in.Err()
+}
+
+// openPart checks the bytes of a part file and returns its two streams.
+func openPart(data []byte) (fits, picks []byte, err error) {
+	if len(data) < partHead || string(data[:len(partMagic)]) != partMagic {
+		return nil, nil, errors.New("it is cut short or not a part of this version")
+	}
+	body := data[partHead:]
+	if sum := sha256.Sum256(body); !bytes.Equal(sum[:], data[len(partMagic):partHead]) {
+		return nil, nil, errors.New("its checksum is wrong")
+	}
+	unpacker, err := zstd.NewReader(nil, zstd.WithDecoderMaxMemory(maxPart), zstd.WithDecoderConcurrency(1))
+	if err != nil {
+		return nil, nil, err
+	}
+	defer unpacker.Close()
+	plain, err := unpacker.DecodeAll(body, nil)
+	if err != nil {
+		return nil, nil, fmt.Errorf("it does not unpack: %w", err)
+	}
+	if len(plain) < 8 || binary.BigEndian.Uint64(plain) > uint64(len(plain)-8) {
+		return nil, nil, errors.New("its lengths do not add up")
+	}
+	size := binary.BigEndian.Uint64(plain)
+	return plain[8 : 8+size], plain[8+size:], nil
+}
+
+// partPath is where the part with a key lies.
+func (d *Dir) partPath(key string) string { return filepath.Join(d.path, partsFolder, key+".part") }
+
+// WritePart keeps a unit's rows under a key. It is safe to call from several
+// goroutines with different keys.
+func (d *Dir) WritePart(key string, p *Part) error {
+	data, err := p.encode()
+	if err != nil {
+		return err
+	}
+	return commit(d.disk, d.partPath(key), func(w io.Writer) error {
+		_, err := w.Write(data)
+		return err
+	})
+}
+
+// CheckPart reports whether the part with a key is there and intact. A broken part
+// is a *BrokenPartError.
+func (d *Dir) CheckPart(key string) (bool, error) {
+	_, _, err := d.loadPart(key)
+	if errors.Is(err, fs.ErrNotExist) {
+		return false, nil
+	}
+	return err == nil, err
+}
+
+// loadPart reads and checks a part file.
+func (d *Dir) loadPart(key string) (fits, picks []byte, err error) {
+	path := d.partPath(key)
+	data, err := os.ReadFile(path)
+	if err != nil {
+		return nil, nil, err
+	}
+	if fits, picks, err = openPart(data); err != nil {
+		return nil, nil, &BrokenPartError{path, err.Error()}
+	}
+	return fits, picks, nil
+}
+
+// ReadPart calls the functions with the rows of the part with a key, in order. A
+// row is overwritten by the next.
+func (d *Dir) ReadPart(key string, fit func(*Fit) error, pick func(*Pick) error) error {
+	fits, picks, err := d.loadPart(key)
+	if err != nil {
+		return err
+	}
+	if err := readStream(Fits, fits, fit); err != nil {
+		return err
+	}
+	return readStream(Picks, picks, pick)
+}

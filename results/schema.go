@@ -1,0 +1,122 @@
+package results
+
+// The tables. n is the number of training observations, m of held-out ones, S the
+// smoother matrix, f the true curve, f̂ the fitted one, RSS the residual sum of
+// squares, t = tr S; y² stands for the square of the unit of y.
+
+// Cells has a row per cell.
+var Cells = &Table[Cell]{
+	Name: "cells",
+	Doc:  "the cells of the study: truth × design × noise × n",
+	columns: []column[Cell]{
+		{"cell", "", "key of the cell: truth/design/noise/n", func(r *Cell) any { return &r.Cell }},
+		{"hash", "", "hash of what defines the cell's data, by content", func(r *Cell) any { return &r.Hash }},
+		{"truth", "", "name of the truth in the study", func(r *Cell) any { return &r.Truth }},
+		{"design", "", "name of the design in the study", func(r *Cell) any { return &r.Design }},
+		{"noise", "", "name of the noise in the study", func(r *Cell) any { return &r.Noise }},
+		{"n", "observations", "training sample size", func(r *Cell) any { return &r.N }},
+		{"heldout", "observations", "held-out sample size", func(r *Cell) any { return &r.HeldOut }},
+		{"noise_variance", "y²", "noise floor: exact variance of y − f(x), averaged over the design law", func(r *Cell) any { return &r.NoiseVariance }},
+		{"fixed_design", "", "whether the training x are the same in every replicate", func(r *Cell) any { return &r.FixedDesign }},
+		{"seed", "", "seed of the study", func(r *Cell) any { return &r.Seed }},
+		{"replicates", "", "number of replicates that were run", func(r *Cell) any { return &r.Replicates }},
+	},
+}
+
+// Fits has a row per cell × replicate × smoother × df.
+var Fits = &Table[Fit]{
+	Name: "fits",
+	Doc:  "every rung that was fitted, with its scores and criteria",
+	columns: []column[Fit]{
+		{"cell", "", "key of the cell", func(r *Fit) any { return &r.Cell }},
+		{"replicate", "", "number of the replicate, from 0", func(r *Fit) any { return &r.Replicate }},
+		{"smoother", "", "label of the smoother", func(r *Fit) any { return &r.Smoother }},
+		{"df", "df", "equivalent degrees of freedom asked for", func(r *Fit) any { return &r.DF }},
+		{"tr_s", "df", "tr S, the equivalent degrees of freedom attained", func(r *Fit) any { return &r.TrS }},
+		{"tr_sts", "df", "tr SᵀS", func(r *Fit) any { return &r.TrSTS }},
+		{"df_residual", "df", "n − tr(2S − SSᵀ)", func(r *Fit) any { return &r.DFResidual }},
+		{"tuning", "family's own", "the family's native parameter: bandwidth, neighbour fraction, λ, number of interior knots, degree", func(r *Fit) any { return &r.Tuning }},
+		{"status", "", "ok, or why there is no fit or no finite score", func(r *Fit) any { return &r.Status }},
+		{"note", "", "what a reader of this row should know, or empty", func(r *Fit) any { return &r.Note }},
+		{"train_mse", "y²", "training error, RSS/n", func(r *Fit) any { return &r.TrainMSE }},
+		{"ase_train", "y²", "(1/n) Σ (f̂ − f)² at the training x", func(r *Fit) any { return &r.ASETrain }},
+		{"heldout_mse", "y²", "held-out error, (1/m) Σ (y − f̂)² over the held-out set", func(r *Fit) any { return &r.HeldoutMSE }},
+		{"heldout_noise", "y²", "(1/m) Σ (y − f)² over the same held-out set: what the truth itself scores", func(r *Fit) any { return &r.HeldoutNoise }},
+		{"ase_heldout", "y²", "average squared error, (1/m) Σ (f̂ − f)² at the held-out x", func(r *Fit) any { return &r.ASEHeldout }},
+		{"ase_inside", "y²", "average squared error over the held-out x within the training range; null if there are none", func(r *Fit) any { return &r.ASEInside }},
+		{"ase_outside", "y²", "average squared error over the held-out x beyond the training range; null if there are none", func(r *Fit) any { return &r.ASEOutside }},
+		{"gcv", "y²", "(RSS/n)/(1 − t/n)², infinite where t ≥ n", func(r *Fit) any { return &r.GCV }},
+		{"loocv", "y²", "mean of (r_i/(1 − S_ii))²; neighbour widths and quantile knots are held", func(r *Fit) any { return &r.LOOCV }},
+		{"kfold", "y²", "k-fold cross-validation, each fold refitted at the same df, with the study's first k; null without a kfold rule or where a fold cannot be fitted", func(r *Fit) any { return &r.KFold }},
+		{"kfold_se", "y²", "standard deviation of the fold means ÷ √k", func(r *Fit) any { return &r.KFoldSE }},
+		{"cp", "y²", "RSS/n + 2σ²t/n with the known noise variance σ²", func(r *Fit) any { return &r.CP }},
+		{"aic", "", "log(RSS/n) + 2t/n", func(r *Fit) any { return &r.AIC }},
+		{"aicc", "", "log(RSS/n) + 1 + 2(t + 1)/(n − t − 2), infinite where t ≥ n − 2", func(r *Fit) any { return &r.AICc }},
+		{"bic", "", "log(RSS/n) + t log(n)/n", func(r *Fit) any { return &r.BIC }},
+		{"reml", "", "(n − 2) log(yᵀ(I−S)y) − log det⁺(I − S); null where the family has no such form", func(r *Fit) any { return &r.REML }},
+		{"ml", "", "n log(yᵀ(I−S)y) − log det⁺(I − S); null where the family has no such form", func(r *Fit) any { return &r.ML }},
+	},
+}
+
+// Picks has a row per cell × replicate × smoother × rule, the oracle's included.
+var Picks = &Table[Pick]{
+	Name: "picks",
+	Doc:  "the rung that each rule picked from each ladder, and the oracle's",
+	columns: []column[Pick]{
+		{"cell", "", "key of the cell", func(r *Pick) any { return &r.Cell }},
+		{"replicate", "", "number of the replicate, from 0", func(r *Pick) any { return &r.Replicate }},
+		{"smoother", "", "label of the smoother", func(r *Pick) any { return &r.Smoother }},
+		{"rule", "", "label of the rule; oracle for the rung with the smallest true error", func(r *Pick) any { return &r.Rule }},
+		{"df", "df", "df of the picked rung", func(r *Pick) any { return &r.DF }},
+		{"heldout_mse", "y²", "held-out error of the pick", func(r *Pick) any { return &r.HeldoutMSE }},
+		{"heldout_noise", "y²", "what the truth itself scores on the same held-out set", func(r *Pick) any { return &r.HeldoutNoise }},
+		{"ase_heldout", "y²", "average squared error of the pick at the held-out x", func(r *Pick) any { return &r.ASEHeldout }},
+		{"oracle_df", "df", "df of the oracle: the rung of this ladder with the smallest ASE in this replicate", func(r *Pick) any { return &r.OracleDF }},
+		{"oracle_ase", "y²", "average squared error of the oracle", func(r *Pick) any { return &r.OracleASE }},
+		{"regret", "ratio", "ASE of the pick ÷ ASE of the oracle", func(r *Pick) any { return &r.Regret }},
+		{"at_edge", "", "whether the pick is the first or last usable rung of the grid", func(r *Pick) any { return &r.AtEdge }},
+		{"status", "", "ok, or why there is no pick", func(r *Pick) any { return &r.Status }},
+	},
+}
+
+// Summaries has a row per cell × smoother × rule × measure.
+var Summaries = &Table[Summary]{
+	Name: "summary",
+	Doc:  "figures over replicates, each with its Monte Carlo standard error",
+	columns: []column[Summary]{
+		{"cell", "", "key of the cell", func(r *Summary) any { return &r.Cell }},
+		{"smoother", "", "label of the smoother", func(r *Summary) any { return &r.Smoother }},
+		{"rule", "", "label of the rule, or oracle", func(r *Summary) any { return &r.Rule }},
+		{"measure", "", "name of the figure", func(r *Summary) any { return &r.Measure }},
+		{"value", "measure's own", "the figure; null where the replicates do not determine it", func(r *Summary) any { return &r.Value }},
+		{"mcse", "measure's own", "its Monte Carlo standard error; null where it has none", func(r *Summary) any { return &r.MCSE }},
+		{"replicates", "", "number of replicates that the figure rests on", func(r *Summary) any { return &r.Replicates }},
+		{"failed", "", "number of replicates without a scored pick, left out of the figure", func(r *Summary) any { return &r.Failed }},
+	},
+}
+
+// Timings has a row per unit of work. It alone varies from run to run.
+var Timings = &Table[Timing]{
+	Name: "timings",
+	Doc:  "how long the units of work took; not reproducible, hence apart",
+	columns: []column[Timing]{
+		{"cell", "", "key of the cell", func(r *Timing) any { return &r.Cell }},
+		{"from", "", "first replicate of the unit", func(r *Timing) any { return &r.From }},
+		{"to", "", "replicate after the last of the unit", func(r *Timing) any { return &r.To }},
+		{"fits", "", "number of rungs fitted", func(r *Timing) any { return &r.Fits }},
+		{"seconds", "s", "elapsed time on one worker, writing included", func(r *Timing) any { return &r.Seconds }},
+	},
+}
+
+// ColumnDocs has a row per column of every table.
+var ColumnDocs = &Table[ColumnDoc]{
+	Name: "columns",
+	Doc:  "what every column of every table means",
+	columns: []column[ColumnDoc]{
+		{"table", "", "name of the table", func(r *ColumnDoc) any { return &r.Table }},
+		{"column", "", "name of the column", func(r *ColumnDoc) any { return &r.Column }},
+		{"type", "", "text, integer, real, real or null, true or false", func(r *ColumnDoc) any { return &r.Type }},
+		{"unit", "", "unit, where the column has one", func(r *ColumnDoc) any { return &r.Unit }},
+		{"description", "", "what the column means", func(r *ColumnDoc) any { return &r.Description }},
+	},
+}
