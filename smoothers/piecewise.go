@@ -33,12 +33,17 @@ func (p *Piecewise) At(dst, t []float64) {
 		for k < last && ti >= p.Break[k+1] {
 			k++
 		}
-		u := (ti - p.Origin[k]) / p.Width[k]
-		c := p.Coef[k*p.Order : (k+1)*p.Order]
-		v := c[len(c)-1]
-		for j := len(c) - 2; j >= 0; j-- {
-			v = v*u + c[j]
-		}
-		dst[i] = v
+		dst[i] = p.Piece(k, ti)
 	}
+}
+
+// Piece evaluates the polynomial of piece k at t, wherever t lies.
+func (p *Piecewise) Piece(k int, t float64) float64 {
+	u := (t - p.Origin[k]) / p.Width[k]
+	c := p.Coef[k*p.Order : (k+1)*p.Order]
+	v := c[len(c)-1]
+	for j := len(c) - 2; j >= 0; j-- {
+		v = v*u + c[j]
+	}
+	return v
 }

@@ -44,6 +44,12 @@ type Rung struct {
 	// Remainder holds 1 − S_ii without the cancellation of that difference.
 	Leverage, RowNorm2, Remainder []float64
 
+	// LogDet is the log of the product of the non-zero eigenvalues of I − S, for
+	// families with a mixed-model form orthogonal to the straight line; HasLogDet
+	// says whether the family has one.
+	LogDet    float64
+	HasLogDet bool
+
 	solver solver // nil unless Status is OK
 }
 
@@ -73,8 +79,9 @@ type Fit struct {
 	Fitted []float64 // ŷ at the design, length n
 	Curve  Curve     // the fitted function, on the whole line
 
-	pieces Piecewise // storage behind Curve for piecewise polynomials
-	work   []float64 // scratch of the family
+	pieces Piecewise  // storage behind Curve for piecewise polynomials
+	local  localCurve // storage behind Curve for local fits
+	work   []float64  // scratch of the family
 }
 
 // A Curve is a fitted function.

@@ -1,0 +1,179 @@
+package scoring
+
+import (
+	"slices"
+
+	"bendtest/results"
+	"bendtest/sim"
+	"bendtest/smoothers"
+)
+
+// An Entrant is a smoother that takes part, with its label and its grid of df,
+// ascending.
+type Entrant struct {
+	Name     string
+	Smoother smoothers.Smoother
+	DF       []float64
+}
+
+// A NamedRule is a rule that takes part, with its label.
+type NamedRule struct {
+	Name string
+	Rule Rule
+}
+
+// A Contest is all that takes part in a study: every rule is applied to every
+// entrant's ladder.
+type Contest struct {
+	Entrants []Entrant
+	Rules    []NamedRule
+}
+
+// folds lists the numbers of folds that the rules ask for, in order of first use.
+func (c *Contest) folds() []int {
+	var ks []int
+	for _, r := range c.Rules {
+		if kf, ok := r.Rule.(*ByKFold); ok && !slices.Contains(ks, kf.K) {
+			ks = append(ks, kf.K)
+		}
+	}
+	return ks
+}
+
+// Oracle is the label of the oracle's row in picks.
+const Oracle = "oracle"
+
+// A Bench scores replicates of one cell. It owns all the memory that takes and
+// belongs to one goroutine.
+type Bench struct {
+	key     string
+	cell    *sim.Cell
+	contest *Contest
+	seed    uint64
+
+	sample  sim.Sample
+	arena   smoothers.Arena
+	rungs   [][]smoothers.Rung // by entrant
+	laid    bool               // rungs stand on this cell's fixed design
+	fit     smoothers.Fit
+	held    HeldOut
+	trainer trainer
+	folders []*folder
+	rows    Rows
+}
+
+// Rows are the rows of the replicates that a bench has scored.
+type Rows struct {
+	Fits  []results.Fit
+	Picks []results.Pick
+}
+
+// NewBench returns a bench for one cell. key is the cell's key in the tables.
+func NewBench(key string, cell *sim.Cell, contest *Contest, seed uint64) *Bench {
+	b := &Bench{key: key, cell: cell, contest: contest, seed: seed}
+	b.rungs = make([][]smoothers.Rung, len(contest.Entrants))
+	for _, k := range contest.folds() {
+		b.folders = append(b.folders, &folder{k: k})
+	}
+	return b
+}
+
+// Rows returns the rows scored since the last call of Clear. They are valid until
+// the next one.
+func (b *Bench) Rows() *Rows { return &b.rows }
+
+// Clear forgets the rows, keeping their memory.
+func (b *Bench) Clear() {
+	b.rows.Fits, b.rows.Picks = b.rows.Fits[:0], b.rows.Picks[:0]
+}
+
+// Replicate draws one replicate of the cell and appends its rows.
+func (b *Bench) Replicate(replicate int) {
+	b.cell.Draw(b.seed, replicate, &b.sample)
+	train := &b.sample.Train
+	n := len(train.X)
+	b.held.Set(&b.sample.Held, train.X[0], train.X[n-1])
+	b.trainer.set(train.X, train.Y, b.cell.NoiseVariance)
+	for _, f := range b.folders {
+		f.deal(n, b.cell.Stream(b.seed, replicate, f.purpose()))
+	}
+	b.layLadders(train.X)
+	for i := range b.contest.Entrants {
+		b.entrant(i, replicate)
+	}
+}
+
+// layLadders works out every entrant's rungs on the design x; on a fixed design
+// only once.
+func (b *Bench) layLadders(x []float64) {
+	if b.laid {
+		return
+	}
+	b.laid = b.cell.FixedDesign()
+	b.arena.Reset()
+	for i, e := range b.contest.Entrants {
+		b.rungs[i] = e.Smoother.On(x, &b.arena).AtDF(e.DF)
+	}
+}
+
+// entrant fits and scores one ladder, and appends its rows of both tables.
+func (b *Bench) entrant(i, replicate int) {
+	e := &b.contest.Entrants[i]
+	path := b.trainer.path(len(e.DF), len(b.folders))
+	first := len(b.rows.Fits)
+	for j := range b.rungs[i] {
+		r := &b.rungs[i][j]
+		row := b.row(replicate, e, r)
+		if r.Status == smoothers.OK {
+			r.Fit(b.sample.Train.Y, &b.fit)
+			b.score(&row)
+		}
+		b.trainer.step(&path.Steps[j], r, &b.fit)
+		b.rows.Fits = append(b.rows.Fits, row)
+	}
+	for k, f := range b.folders {
+		path.Folds[k].K = f.k
+		f.validate(e.Smoother, e.DF, b.sample.Train.X, b.sample.Train.Y, path.Folds[k].Steps)
+	}
+	fits := b.rows.Fits[first:]
+	for j := range fits {
+		path.record(j, &fits[j])
+	}
+	b.picks(e, path, fits)
+}
+
+// row returns the part of a row that the design alone decides.
+func (b *Bench) row(replicate int, e *Entrant, r *smoothers.Rung) results.Fit {
+	row := results.Fit{
+		Cell: b.key, Replicate: replicate, Smoother: e.Name, DF: r.DF,
+		Status: r.Status.String(), Note: r.Note, HeldoutNoise: results.Num(b.held.Noise()),
+	}
+	if r.Status == smoothers.OK {
+		row.TrS, row.TrSTS = results.Num(r.TrS), results.Num(r.TrSTS)
+		row.DFResidual, row.Tuning = results.Num(r.DFResidual), results.Num(r.Tuning)
+	}
+	return row
+}
+
+// score fills in what the held-out set and the truth say of the fit at hand.
+func (b *Bench) score(row *results.Fit) {
+	s, finite := b.held.Score(b.fit.Curve)
+	if !finite {
+		row.Status = smoothers.NotFinite.String()
+		return
+	}
+	row.HeldoutMSE, row.ASEHeldout = results.Num(s.MSE), results.Num(s.ASE)
+	if s.HasInside {
+		row.ASEInside = results.Num(s.Inside)
+	}
+	if s.HasOutside {
+		row.ASEOutside = results.Num(s.Outside)
+	}
+	train := &b.sample.Train
+	ase := 0.0
+	for i, f := range train.F {
+		d := b.fit.Fitted[i] - f
+		ase += d * d
+	}
+	row.ASETrain = results.Num(ase / float64(len(train.F)))
+}

@@ -1,0 +1,13 @@
+// Package scoring turns fitted rungs into judgements.
+//
+// In comes one replicate: a training set, a held-out set, and the rungs of every
+// smoother on that design. Out go rows: one per rung with its scores and criteria
+// (results.Fit), one per method and one per oracle with the rung that was picked
+// and its regret (results.Pick), and, over replicates, summaries that each carry a
+// Monte Carlo standard error and the count they rest on (results.Summary).
+//
+// The one idea worth knowing is the wall between the two kinds of figure. What a
+// rule may see is a Path, made from the training set alone; what says how good a
+// rung truly is comes from a HeldOut. Only Bench holds both, and it hands a rule
+// nothing but the Path.
+package scoring
