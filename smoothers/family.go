@@ -22,5 +22,16 @@ type Family struct {
 
 // Families returns all families in the order in which they are listed to people.
 func Families() []Family {
-	return []Family{}
+	return []Family{
+		{
+			Name: "kernel", Doc: "Nadaraya–Watson: a weighted mean around each point",
+			Tuning: "bandwidth in units of x", LowestDF: 1,
+			New: func() Smoother { return NewKernel() },
+		},
+		{
+			Name: "local", Doc: "local polynomial regression of degree 1 or 2",
+			Tuning: "bandwidth in units of x, or fraction of the observations", LowestDF: 2,
+			New: func() Smoother { return NewLocal() },
+		},
+	}
 }

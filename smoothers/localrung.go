@@ -1,0 +1,159 @@
+package smoothers
+
+import "math"
+
+// AtTuning implements Ladder.
+func (l *localLadder) AtTuning(tunings []float64) []Rung {
+	rungs := make([]Rung, len(tunings))
+	solvers := make([]localRung, len(tunings))
+	for i, t := range tunings {
+		r := &rungs[i]
+		r.Tuning = t
+		if r.Status, r.Note = l.admit(t); r.Status == OK {
+			l.lay(r, &solvers[i])
+		}
+		r.DF = r.TrS
+	}
+	return rungs
+}
+
+// AtDF implements Ladder.
+func (l *localLadder) AtDF(dfs []float64) []Rung {
+	rungs := make([]Rung, len(dfs))
+	solvers := make([]localRung, len(dfs))
+	for i, df := range dfs {
+		r := &rungs[i]
+		r.DF = df
+		if r.Tuning, r.Status, r.Note = l.tune(df); r.Status == OK {
+			l.lay(r, &solvers[i])
+		}
+	}
+	return rungs
+}
+
+// A localRung fits a y on one rung.
+type localRung struct {
+	l      *localLadder
+	tuning float64
+	rows   localRows // the rows of S, one per distinct x; empty where too large to keep
+}
+
+// A localRows holds linear functionals of y, each on consecutive distinct x:
+// functional i is Σ_g weight[end[i−1]+g]·Y[lo[i]+g]. Indices are kept as floats,
+// which arenas deal in.
+type localRows struct {
+	lo, end []float64
+	weight  []float64
+}
+
+// apply writes the functionals of the sums of y into dst.
+func (r *localRows) apply(dst, sums []float64) {
+	from := 0
+	for i, end := range r.end {
+		row := r.weight[from:int(end)]
+		y := sums[int(r.lo[i]):]
+		y = y[:len(row)]
+		var v float64
+		for j, w := range row {
+			v += w * y[j]
+		}
+		dst[i] = v
+		from = int(end)
+	}
+}
+
+// rowsKept bounds the size of the rows kept per rung: half a megabyte.
+const rowsKept = 1 << 16
+
+// lay works out all of a rung that y does not touch.
+func (l *localLadder) lay(r *Rung, s *localRung) {
+	n, m := len(l.x), len(l.z)
+	*s = localRung{l: l, tuning: r.Tuning}
+	r.solver = s
+	r.Leverage, r.RowNorm2, r.Remainder = l.mem.floats(n), l.mem.floats(n), l.mem.floats(n)
+	lo, end := l.mem.floats(m), l.mem.floats(m)
+	if l.store == nil {
+		l.store = l.mem.floats(min(m*m, rowsKept))
+	}
+	used := 0
+	g := l.gaze(r.Tuning)
+	for i, t := range l.z {
+		g.at(t)
+		row, lev, rem := l.row(&g, i)
+		if math.IsNaN(lev) {
+			*r = Rung{DF: r.DF, Tuning: r.Tuning, Status: RankDeficient, Note: noteFew}
+			return
+		}
+		var rest float64
+		c := l.count[l.fit.lo : l.fit.lo+len(row)]
+		for j, v := range row {
+			rest += c[j] * v * v
+		}
+		own := rest + (l.count[i]-1)*lev*lev
+		r.Leverage[i], r.Remainder[i], r.RowNorm2[i] = lev, rem, own+lev*lev
+		r.TrS += l.count[i] * lev
+		r.TrSTS += l.count[i] * r.RowNorm2[i]
+		r.DFResidual += l.count[i] * (own + rem*rem)
+		row[i-l.fit.lo] = lev
+		lo[i] = float64(l.fit.lo)
+		if used+len(row) <= len(l.store) {
+			copy(l.store[used:], row)
+		}
+		used += len(row)
+		end[i] = float64(used)
+	}
+	l.spread(r.Leverage, r.Leverage)
+	l.spread(r.Remainder, r.Remainder)
+	l.spread(r.RowNorm2, r.RowNorm2)
+	if used <= len(l.store) {
+		s.rows = localRows{lo: lo, end: end, weight: l.mem.floats(used)}
+		copy(s.rows.weight, l.store)
+	}
+}
+
+// row returns the weights with which the fitted value at the i-th distinct x takes
+// one observation of each distinct x from l.fit.lo on, zero at i itself; the leverage
+// lev, with which it takes an observation at i; and rem = 1 − lev.
+//
+// It fits without one observation at i and puts that back (Sherman & Morrison):
+// with v the variance of the fit without it, of weight 1, lev = v/(1 + v) and
+// rem = 1/(1 + v), and the rest of the row is rem times the row without it.
+func (l *localLadder) row(g *gaze, i int) (row []float64, lev, rem float64) {
+	f := &l.fit
+	if !f.at(g, l.z[i], i) {
+		f.lo, f.hi = i, i+1
+		row = f.w[:1]
+		row[0] = 0
+		return row, 1, 0 // a lone x that the fit must meet
+	}
+	v := f.variance()
+	near := math.Exp(-f.far) // weights of f are relative to this
+	lev, rem = v/(near+v), near/(near+v)
+	row = f.w[:f.hi-f.lo]
+	for j := range row {
+		row[j] *= rem * f.kappa(j)
+	}
+	row[i-f.lo] = 0
+	return row, lev, rem
+}
+
+// solve implements solver.
+func (s *localRung) solve(y []float64, f *Fit) {
+	l := s.l
+	m := len(l.z)
+	f.work = resize(f.work, m+l.scratch())
+	sums := f.work[:m]
+	l.sums(sums, y)
+	c := &f.local
+	*c = localCurve{rung: s, sums: sums, fit: l.fitOn(f.work[m:])}
+	if s.rows.end != nil {
+		s.rows.apply(f.Fitted[:m], sums)
+	} else {
+		g := l.gaze(s.tuning)
+		for i, t := range l.z {
+			f.Fitted[i] = c.value(&g, t)
+		}
+	}
+	l.spread(f.Fitted, f.Fitted[:m])
+	f.Curve = c
+}
