@@ -61,6 +61,9 @@ func commit(d disk, path string, write func(io.Writer) error) (err error) {
 	return d.SyncDir(filepath.Clean(dir))
 }
 
+// WriteFile writes a file anywhere so that it appears whole or not at all.
+func WriteFile(path string, write func(io.Writer) error) error { return commit(osDisk{}, path, write) }
+
 // osDisk is the real file system.
 type osDisk struct{}
 

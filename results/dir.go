@@ -117,6 +117,15 @@ func (d *Dir) TablePath(name string) string {
 	return filepath.Join(d.path, tablesFolder, name+".parquet")
 }
 
+// RemoveTable removes a table if it is there.
+func (d *Dir) RemoveTable(name string) error {
+	err := os.Remove(d.TablePath(name))
+	if errors.Is(err, fs.ErrNotExist) {
+		return nil
+	}
+	return err
+}
+
 // WriteTable writes a table; rows hands its rows to the function it is given. The
 // old table stays until the new one is whole.
 func WriteTable[R any](d *Dir, t *Table[R], rows func(append func(*R) error) error) error {

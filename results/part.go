@@ -65,6 +65,12 @@ func (p *Part) encode() ([]byte, error) {
 	return data, nil
 }
 
+// Size is the number of bytes that the part takes on disk.
+func (p *Part) Size() (int, error) {
+	data, err := p.encode()
+	return len(data), err
+}
+
 // writeStream writes rows as an Arrow stream of one record.
 func writeStream[R any](t *Table[R], w io.Writer, rows []R) error {
 	schema := t.arrowSchema()

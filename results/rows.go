@@ -1,5 +1,10 @@
 package results
 
+import (
+	"math"
+	"strconv"
+)
+
 // A Number is a figure that may be missing: the zero value is null.
 type Number struct {
 	Value float64
@@ -66,6 +71,7 @@ type Summary struct {
 	MCSE       Number
 	Replicates int
 	Failed     int
+	Failure    string
 }
 
 // A Timing is a row of the table timings: how long one unit of work took.
@@ -84,4 +90,16 @@ type ColumnDoc struct {
 	Type        string
 	Unit        string
 	Description string
+}
+
+// MarshalJSON writes null for a missing figure and the strings "inf" and "-inf" for
+// infinite ones, which JSON has no numbers for.
+func (n Number) MarshalJSON() ([]byte, error) {
+	switch {
+	case !n.Known:
+		return []byte("null"), nil
+	case math.IsInf(n.Value, 0):
+		return []byte(`"` + realText(n.Value) + `"`), nil
+	}
+	return strconv.AppendFloat(nil, n.Value, 'g', -1, 64), nil
 }

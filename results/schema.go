@@ -92,6 +92,7 @@ var Summaries = &Table[Summary]{
 		{"mcse", "measure's own", "its Monte Carlo standard error; null where it has none", func(r *Summary) any { return &r.MCSE }},
 		{"replicates", "", "number of replicates that the figure rests on", func(r *Summary) any { return &r.Replicates }},
 		{"failed", "", "number of replicates without a scored pick, left out of the figure", func(r *Summary) any { return &r.Failed }},
+		{"failure", "", "most frequent status of those replicates, or empty", func(r *Summary) any { return &r.Failure }},
 	},
 }
 

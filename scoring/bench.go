@@ -90,16 +90,21 @@ func (b *Bench) Clear() {
 // Replicate draws one replicate of the cell and appends its rows.
 func (b *Bench) Replicate(replicate int) {
 	b.cell.Draw(b.seed, replicate, &b.sample)
-	train := &b.sample.Train
+	b.Score(replicate, &b.sample)
+}
+
+// Score appends the rows of a sample that is replicate of the cell.
+func (b *Bench) Score(replicate int, sample *sim.Sample) {
+	train := &sample.Train
 	n := len(train.X)
-	b.held.Set(&b.sample.Held, train.X[0], train.X[n-1])
+	b.held.Set(&sample.Held, train.X[0], train.X[n-1])
 	b.trainer.set(train.X, train.Y, b.cell.NoiseVariance)
 	for _, f := range b.folders {
 		f.deal(n, b.cell.Stream(b.seed, replicate, f.purpose()))
 	}
 	b.layLadders(train.X)
 	for i := range b.contest.Entrants {
-		b.entrant(i, replicate)
+		b.entrant(i, replicate, train)
 	}
 }
 
@@ -117,7 +122,7 @@ func (b *Bench) layLadders(x []float64) {
 }
 
 // entrant fits and scores one ladder, and appends its rows of both tables.
-func (b *Bench) entrant(i, replicate int) {
+func (b *Bench) entrant(i, replicate int, train *sim.Set) {
 	e := &b.contest.Entrants[i]
 	path := b.trainer.path(len(e.DF), len(b.folders))
 	first := len(b.rows.Fits)
@@ -125,15 +130,15 @@ func (b *Bench) entrant(i, replicate int) {
 		r := &b.rungs[i][j]
 		row := b.row(replicate, e, r)
 		if r.Status == smoothers.OK {
-			r.Fit(b.sample.Train.Y, &b.fit)
-			b.score(&row)
+			r.Fit(train.Y, &b.fit)
+			b.score(&row, train)
 		}
 		b.trainer.step(&path.Steps[j], r, &b.fit)
 		b.rows.Fits = append(b.rows.Fits, row)
 	}
 	for k, f := range b.folders {
 		path.Folds[k].K = f.k
-		f.validate(e.Smoother, e.DF, b.sample.Train.X, b.sample.Train.Y, path.Folds[k].Steps)
+		f.validate(e.Smoother, e.DF, train.X, train.Y, path.Folds[k].Steps)
 	}
 	fits := b.rows.Fits[first:]
 	for j := range fits {
@@ -156,7 +161,7 @@ func (b *Bench) row(replicate int, e *Entrant, r *smoothers.Rung) results.Fit {
 }
 
 // score fills in what the held-out set and the truth say of the fit at hand.
-func (b *Bench) score(row *results.Fit) {
+func (b *Bench) score(row *results.Fit, train *sim.Set) {
 	s, finite := b.held.Score(b.fit.Curve)
 	if !finite {
 		row.Status = smoothers.NotFinite.String()
@@ -169,7 +174,6 @@ func (b *Bench) score(row *results.Fit) {
 	if s.HasOutside {
 		row.ASEOutside = results.Num(s.Outside)
 	}
-	train := &b.sample.Train
 	ase := 0.0
 	for i, f := range train.F {
 		d := b.fit.Fitted[i] - f

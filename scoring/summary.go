@@ -1,6 +1,7 @@
 package scoring
 
 import (
+	"maps"
 	"slices"
 
 	"bendtest/results"
@@ -19,7 +20,8 @@ type Summariser struct {
 type method struct {
 	smoother, rule string
 	tally          tally
-	failed         int // replicates without a scored pick
+	failed         int            // replicates without a scored pick
+	statuses       map[string]int // of those replicates
 }
 
 // NewSummariser returns an empty one for the cell with this key and known noise
@@ -44,6 +46,10 @@ func (s *Summariser) Add(p *results.Pick) {
 func (m *method) add(p *results.Pick) {
 	if !p.Regret.Known {
 		m.failed++
+		if m.statuses == nil {
+			m.statuses = map[string]int{}
+		}
+		m.statuses[p.Status]++
 		return
 	}
 	t := &m.tally
@@ -60,6 +66,18 @@ func (m *method) add(p *results.Pick) {
 	t.edge = append(t.edge, edge)
 }
 
+// failure is the most frequent status of the failed replicates, the first in the
+// alphabet of equals, or "".
+func (m *method) failure() string {
+	worst := ""
+	for _, status := range slices.Sorted(maps.Keys(m.statuses)) {
+		if worst == "" || m.statuses[status] > m.statuses[worst] {
+			worst = status
+		}
+	}
+	return worst
+}
+
 // Rows returns a row per method and measure, methods in the order in which they
 // first came. The summariser takes no more picks afterwards.
 func (s *Summariser) Rows() []results.Summary {
@@ -72,7 +90,7 @@ func (s *Summariser) Rows() []results.Summary {
 			e := measure.of(&m.tally)
 			rows = append(rows, results.Summary{
 				Cell: s.cell, Smoother: m.smoother, Rule: m.rule, Measure: measure.Name,
-				Value: e.Value, MCSE: e.MCSE, Replicates: len(m.tally.mse), Failed: m.failed,
+				Value: e.Value, MCSE: e.MCSE, Replicates: len(m.tally.mse), Failed: m.failed, Failure: m.failure(),
 			})
 		}
 	}

@@ -1,0 +1,142 @@
+package main
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"io"
+	"path/filepath"
+	"runtime"
+	"strings"
+
+	"github.com/spf13/cobra"
+
+	"bendtest/cmd/bendtest/sweep"
+	"bendtest/results"
+)
+
+func runCommand() *cobra.Command {
+	var (
+		out     string
+		workers int
+		seed    uint64
+		quiet   bool
+	)
+	cmd := &cobra.Command{
+		Use:   "run [STUDY.toml]",
+		Short: "Run a study, or the embedded demonstration, and write its tables",
+		Long: `Run a study: draw its data, fit every smoother at every df, apply the rules, and
+write the tables DIR/tables/*.parquet. Without a file it runs the embedded
+demonstration study. Running the same command again resumes: what is there and
+intact is kept. The tables do not depend on the number of workers.
+
+The first interrupt finishes the units in hand and stops (exit code 3); the second
+stops at once.`,
+		Example: `  bendtest run
+  bendtest run night.toml -o night --workers 4`,
+		Args: between(0, 1),
+		RunE: func(cmd *cobra.Command, args []string) error {
+			path := ""
+			if len(args) == 1 {
+				path = args[0]
+			}
+			var override *uint64
+			if cmd.Flags().Changed("seed") {
+				override = &seed
+			}
+			study, err := loadStudy(path, override)
+			if err != nil {
+				return err
+			}
+			if workers < 1 {
+				return refuse("--workers %d; want at least 1", workers)
+			}
+			if out == "" {
+				out = defaultDir(path)
+			}
+			job := sweep.Job{Study: study, Dir: out, Workers: workers, Build: build()}
+			return runJob(cmd.Context(), job, quiet, cmd.OutOrStdout(), cmd.ErrOrStderr())
+		},
+	}
+	cmd.Flags().StringVarP(&out, "output", "o", "", "`DIR` for tables and parts (default bendtest-NAME after the study)")
+	cmd.Flags().IntVar(&workers, "workers", runtime.NumCPU(), "number of replicate blocks worked at the same `time`")
+	cmd.Flags().Uint64Var(&seed, "seed", 0, "`S` in place of the study's seed")
+	cmd.Flags().BoolVar(&quiet, "quiet", false, "no progress and no closing tables")
+	cmd.Flags().Lookup("workers").Usage = "`N` units worked at the same time"
+	return cmd
+}
+
+// defaultDir names the run directory after the study file.
+func defaultDir(path string) string {
+	if path == "" {
+		return "bendtest-orchard"
+	}
+	base := filepath.Base(path)
+	return "bendtest-" + strings.TrimSuffix(base, filepath.Ext(base))
+}
+
+// runJob runs a sweep, shows its progress, and prints what it found.
+func runJob(ctx context.Context, job sweep.Job, quiet bool, stdout, stderr io.Writer) error {
+	var watch sweep.Observer = silent{}
+	if !quiet {
+		p := newProgress(stderr)
+		defer p.End()
+		watch = p
+	}
+	outcome, err := job.Run(ctx, watch)
+	var foreign *results.ForeignDirError
+	var locked *results.LockedError
+	switch {
+	case errors.As(err, &foreign), errors.As(err, &locked):
+		return &requestError{err}
+	case err != nil:
+		return err
+	case outcome.Stopped:
+		return fmt.Errorf("%w with everything so far kept in %s; run the same command again to go on", errStopped, job.Dir)
+	}
+	if quiet {
+		return nil
+	}
+	return printOutcome(stdout, job.Dir)
+}
+
+// silent observes nothing.
+type silent struct{}
+
+func (silent) Begin(int, int, int) {}
+func (silent) Done(int, int)       {}
+
+// printOutcome prints the closing tables of a run and where its files lie.
+func printOutcome(w io.Writer, path string) error {
+	dir, err := results.Open(path)
+	if err != nil {
+		return err
+	}
+	cells, err := results.ReadRows(dir, results.Cells)
+	if err != nil {
+		return err
+	}
+	summary, err := results.ReadRows(dir, results.Summaries)
+	if err != nil {
+		return err
+	}
+	from := 0
+	for _, c := range cells {
+		to := from
+		for to < len(summary) && summary[to].Cell == c.Cell {
+			to++
+		}
+		printCell(w, c, summary[from:to])
+		from = to
+	}
+	fmt.Fprint(w, closingWords)
+	names, err := dir.TableNames()
+	if err != nil {
+		return err
+	}
+	fmt.Fprintf(w, "\nTables in %s:\n", filepath.Dir(dir.TablePath("")))
+	for _, name := range names {
+		fmt.Fprintf(w, "  %s.parquet\n", name)
+	}
+	return nil
+}
