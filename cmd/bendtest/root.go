@@ -34,6 +34,7 @@ was done, 3 stopped by a signal with everything so far kept.`,
 		},
 		RunE: func(cmd *cobra.Command, _ []string) error { return cmd.Help() },
 	}
+	root.SuggestionsMinimumDistance = 2
 	root.SetOut(stdout)
 	root.SetErr(stderr)
 	root.SetFlagErrorFunc(func(cmd *cobra.Command, err error) error {
@@ -60,6 +61,9 @@ func unknownCommand(cmd *cobra.Command, word string) error {
 // between makes a cobra argument check whose failure is a wrong request.
 func between(least, most int) cobra.PositionalArgs {
 	check := cobra.RangeArgs(least, most)
+	if least == most {
+		check = cobra.ExactArgs(least)
+	}
 	return func(cmd *cobra.Command, args []string) error {
 		if err := check(cmd, args); err != nil {
 			return refuse("%w (usage: %s)", err, cmd.UseLine())

@@ -36,6 +36,9 @@ stops at once.`,
   bendtest run night.toml -o night --workers 4`,
 		Args: between(0, 1),
 		RunE: func(cmd *cobra.Command, args []string) error {
+			if workers < 1 {
+				return refuse("--workers %d; want at least 1", workers)
+			}
 			path := ""
 			if len(args) == 1 {
 				path = args[0]
@@ -48,9 +51,6 @@ stops at once.`,
 			if err != nil {
 				return err
 			}
-			if workers < 1 {
-				return refuse("--workers %d; want at least 1", workers)
-			}
 			if out == "" {
 				out = defaultDir(path)
 			}
@@ -59,10 +59,9 @@ stops at once.`,
 		},
 	}
 	cmd.Flags().StringVarP(&out, "output", "o", "", "`DIR` for tables and parts (default bendtest-NAME after the study)")
-	cmd.Flags().IntVar(&workers, "workers", runtime.NumCPU(), "number of replicate blocks worked at the same `time`")
+	cmd.Flags().IntVar(&workers, "workers", runtime.NumCPU(), "`N` units worked at the same time")
 	cmd.Flags().Uint64Var(&seed, "seed", 0, "`S` in place of the study's seed")
 	cmd.Flags().BoolVar(&quiet, "quiet", false, "no progress and no closing tables")
-	cmd.Flags().Lookup("workers").Usage = "`N` units worked at the same time"
 	return cmd
 }
 
