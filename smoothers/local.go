@@ -97,6 +97,7 @@ type localLadder struct {
 	floor float64  // the width must exceed this: a bandwidth, or a number of neighbours
 	grid  traceGrid
 	store []float64 // where a rung's rows grow before they are kept
+	maker panelMaker
 }
 
 // layLocal completes l, which holds the options, on a design.

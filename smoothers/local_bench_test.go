@@ -7,19 +7,22 @@ import (
 
 // benchLocal are the settings whose cost is watched.
 func benchLocal() map[string]Smoother {
-	line := NewLocal()
+	line, steady := NewLocal(), NewLocal()
 	line.Width, line.Kernel = "bandwidth", "gaussian"
-	return map[string]Smoother{"kernel": NewKernel(), "local": NewLocal(), "local-gaussian": line}
+	steady.Width, steady.Kernel = "bandwidth", "epanechnikov"
+	return map[string]Smoother{
+		"kernel": NewKernel(), "local": NewLocal(), "local-gaussian": line, "local-bandwidth": steady,
+	}
 }
 
 func BenchmarkLocal(b *testing.B) {
-	for _, n := range []int{30, 300, 3000} {
-		x := uniformDesign(n, 1)
-		y := wiggle(x, 1)
-		held := uniformDesign(10000, 2)
-		dst := make([]float64, len(held))
-		dfs := []float64{3, 4, 5, 6, 7, 8, 9, 10, 11, 12, 13, 14}
-		for name, s := range benchLocal() {
+	dfs := []float64{3, 4, 5, 6, 7, 8, 9, 10, 11, 12, 13, 14}
+	held := uniformDesign(10000, 2)
+	dst := make([]float64, len(held))
+	for name, s := range benchLocal() {
+		for _, n := range []int{30, 300, 3000} {
+			x := uniformDesign(n, 1)
+			y := wiggle(x, 1)
 			b.Run(fmt.Sprintf("ladder/%s/n=%d", name, n), func(b *testing.B) {
 				var mem Arena
 				b.ReportAllocs()
@@ -29,15 +32,16 @@ func BenchmarkLocal(b *testing.B) {
 				}
 				b.ReportMetric(float64(b.Elapsed().Microseconds())/float64(b.N*len(dfs)), "µs/rung")
 			})
-			rung := s.On(x, nil).AtDF([]float64{8})[0]
-			var f Fit
 			b.Run(fmt.Sprintf("fit/%s/n=%d", name, n), func(b *testing.B) {
+				rung, f := s.On(x, nil).AtDF([]float64{8})[0], Fit{}
 				b.ReportAllocs()
 				for b.Loop() {
 					rung.Fit(y, &f)
 				}
 			})
 			b.Run(fmt.Sprintf("curve/%s/n=%d", name, n), func(b *testing.B) {
+				rung, f := s.On(x, nil).AtDF([]float64{8})[0], Fit{}
+				rung.Fit(y, &f)
 				b.ReportAllocs()
 				for b.Loop() {
 					f.Curve.At(dst, held)

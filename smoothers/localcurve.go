@@ -1,10 +1,30 @@
 package smoothers
 
+import "math"
+
 // A localCurve evaluates a local polynomial fit point by point, from its definition.
 type localCurve struct {
 	rung *localRung
 	sums []float64 // sum of y at each distinct x
 	fit  localFit
+
+	maker panelMaker
+}
+
+// drawn lays out panels for the curve itself. It reports false if there is no end.
+func (c *localCurve) drawn(y, diff []float64) bool {
+	b, l := &c.maker, c.rung.l
+	b.l, b.basis, b.fit, b.sums = l, l.basis(), &c.fit, c.sums
+	b.room = 2 * panelsMost * b.basis.order
+	b.diff = diff[:1]
+	b.diff[0] = 0
+	lo, hi := y[0], y[0]
+	for _, v := range y {
+		lo, hi = min(lo, v), max(hi, v)
+	}
+	// Where y varies less than a thousandth of its level, rounding is what limits.
+	b.scale = max((hi-lo)/2, 1e-3*max(hi, -lo), math.SmallestNonzeroFloat64)
+	return b.make(c.rung.tuning)
 }
 
 // At implements Curve.
@@ -15,6 +35,7 @@ func (c *localCurve) At(dst, t []float64) {
 	l := c.rung.l
 	g := l.gaze(c.rung.tuning)
 	for i, ti := range t {
+		ti -= l.origin
 		if l.hold {
 			ti = min(max(ti, l.z[0]), l.z[len(l.z)-1])
 		}
@@ -22,7 +43,7 @@ func (c *localCurve) At(dst, t []float64) {
 	}
 }
 
-// value returns the fit at t, which must not be left of where g was.
+// value returns the fit at t from the design's origin.
 func (c *localCurve) value(g *gaze, t float64) float64 {
 	g.at(t)
 	if !c.fit.at(g, t, everyone) {

@@ -167,9 +167,11 @@ func (f *localFit) gaussian(g *gaze, t float64, self int) {
 	z, zn, un := f.l.z[f.lo:f.hi], f.l.z[near], f.u[near-f.lo]
 	f.far = un * un / 2
 	half := 0.5 / g.h
+	w := f.w[:len(z)]
 	for i, u := range f.u[:len(z)] {
-		f.w[i] = math.Exp((zn - z[i]) * half * (un + u))
+		w[i] = (zn - z[i]) * half * (un + u)
 	}
+	expAll(w)
 }
 
 // nearest returns the distinct x nearest to t when self is left out: near itself,

@@ -36,6 +36,7 @@ type localRung struct {
 	l      *localLadder
 	tuning float64
 	rows   localRows // the rows of S, one per distinct x; empty where too large to keep
+	panels panelLayout
 }
 
 // A localRows holds linear functionals of y, each on consecutive distinct x:
@@ -106,8 +107,34 @@ func (l *localLadder) lay(r *Rung, s *localRung) {
 	l.spread(r.Remainder, r.Remainder)
 	l.spread(r.RowNorm2, r.RowNorm2)
 	if used <= len(l.store) {
-		s.rows = localRows{lo: lo, end: end, weight: l.mem.floats(used)}
-		copy(s.rows.weight, l.store)
+		s.rows = localRows{lo: lo, end: end, weight: l.keep(l.store[:used])}
+		s.panels = l.layout(r.Tuning)
+	}
+}
+
+// keep returns a copy of v in the ladder's memory.
+func (l *localLadder) keep(v []float64) []float64 {
+	k := l.mem.floats(len(v))
+	copy(k, v)
+	return k
+}
+
+// layout returns the panels of a tuning, or none if their rows are too large to keep.
+func (l *localLadder) layout(tuning float64) panelLayout {
+	b := &l.maker
+	if b.l == nil {
+		m := len(l.z)
+		b.l, b.basis, b.fit, b.scale = l, l.basis(), &l.fit, 1
+		b.diff = l.mem.floats(m)
+		b.weight = l.mem.floats(rowsKept)[:0]
+		b.room = rowsKept
+	}
+	if !b.make(tuning) {
+		return panelLayout{}
+	}
+	return panelLayout{
+		ends: l.keep(b.ends),
+		rows: localRows{lo: l.keep(b.lo), end: l.keep(b.end), weight: l.keep(b.weight)},
 	}
 }
 
@@ -141,19 +168,42 @@ func (l *localLadder) row(g *gaze, i int) (row []float64, lev, rem float64) {
 func (s *localRung) solve(y []float64, f *Fit) {
 	l := s.l
 	m := len(l.z)
-	f.work = resize(f.work, m+l.scratch())
-	sums := f.work[:m]
-	l.sums(sums, y)
 	c := &f.local
-	*c = localCurve{rung: s, sums: sums, fit: l.fitOn(f.work[m:])}
-	if s.rows.end != nil {
-		s.rows.apply(f.Fitted[:m], sums)
-	} else {
+	nodes := len(s.panels.rows.end)
+	f.work = resize(f.work, 2*m+l.scratch()+nodes)
+	sums, values := f.work[:m], f.work[m:m+nodes]
+	l.sums(sums, y)
+	c.rung, c.sums, c.fit = s, sums, l.fitOn(f.work[m+nodes:])
+	switch {
+	case nodes > 0:
+		s.panels.rows.apply(values, sums)
+		l.draw(&f.pieces, s.panels.ends, values, c)
+		f.Curve = &f.pieces
+	case c.drawn(y, f.work[m+nodes+l.scratch():]):
+		l.draw(&f.pieces, c.maker.ends, c.maker.weight, c)
+		f.Curve = &f.pieces
+	default:
+		f.Curve = c
+	}
+	s.fitted(f, c)
+}
+
+// fitted sets f.Fitted, after the curve: from the rows of S, or where these were too
+// large to keep, from the curve.
+func (s *localRung) fitted(f *Fit, c *localCurve) {
+	l := s.l
+	m := len(l.z)
+	switch {
+	case s.rows.end != nil:
+		s.rows.apply(f.Fitted[:m], c.sums)
+	case f.Curve == c:
 		g := l.gaze(s.tuning)
 		for i, t := range l.z {
 			f.Fitted[i] = c.value(&g, t)
 		}
+	default:
+		f.Curve.At(f.Fitted, l.given)
+		return
 	}
 	l.spread(f.Fitted, f.Fitted[:m])
-	f.Curve = c
 }

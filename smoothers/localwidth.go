@@ -2,7 +2,7 @@ package smoothers
 
 import "math"
 
-// A gaze follows ascending targets t over a design and says what the local fit
+// A gaze follows targets t over a design and says what the local fit
 // at t sees: its width h and the distinct x that weigh anything, z[lo:hi].
 type gaze struct {
 	l     *localLadder
@@ -37,7 +37,7 @@ func (l *localLadder) gaze(tuning float64) gaze {
 	return g
 }
 
-// at moves the gaze to t, which must not be left of where it was.
+// at moves the gaze to t. Its cost is the distance moved, in x passed.
 func (g *gaze) at(t float64) {
 	g.h, g.beyond = g.width, false
 	if g.k > 0 {
@@ -51,6 +51,9 @@ func (g *gaze) at(t float64) {
 		for g.hi > 0 && z[g.hi-1] > t && !g.sees(z[g.hi-1], t) {
 			g.hi--
 		}
+		for g.lo > 0 && (z[g.lo-1] >= t || g.sees(z[g.lo-1], t)) {
+			g.lo--
+		}
 		for g.lo < g.hi && z[g.lo] < t && !g.sees(z[g.lo], t) {
 			g.lo++
 		}
@@ -58,6 +61,9 @@ func (g *gaze) at(t float64) {
 	}
 	for g.near+1 < len(z) && z[g.near+1]-t < math.Abs(t-z[g.near]) {
 		g.near++
+	}
+	for g.near > 0 && t-z[g.near-1] < math.Abs(t-z[g.near]) {
+		g.near--
 	}
 	u := (t - z[g.near]) / g.h
 	r := g.h * math.Sqrt(u*u+2*faded[g.l.degree])
@@ -98,6 +104,9 @@ func (g *gaze) neighbours(t float64) {
 	g.spread = 0
 	for g.first+k < n && x[g.first+k]-t < t-x[g.first] {
 		g.first++
+	}
+	for g.first > 0 && t-x[g.first-1] < x[g.first+k-1]-t {
+		g.first--
 	}
 	switch {
 	case t > x[n-1]:

@@ -1,8 +1,11 @@
 package smoothers
 
+import "sort"
+
 // A Piecewise is a curve that is a polynomial between consecutive breaks. Piece k
-// covers [Break[k], Break[k+1]); the first also covers all below and the last all
-// above, so with K pieces Break has length K+1 and its ends only mark the data.
+// covers [Break[k], Break[k+1]); with K pieces Break has length K+1. Below Break[0] and
+// from Break[K] on, the first and the last piece go on, unless Beyond is set: then the
+// pieces end there and Beyond is the curve outside.
 //
 // On piece k the value at t is Σ_j Coef[k·Order+j] u^j with u = (t − Origin[k])/Width[k].
 type Piecewise struct {
@@ -11,11 +14,12 @@ type Piecewise struct {
 	Origin []float64 // length K
 	Width  []float64 // length K, positive
 	Coef   []float64 // K × Order, row-major, lowest power first
+	Beyond Curve     // the curve outside [Break[0], Break[K]), or nil if the end pieces go on
 }
 
 // grow sets the number of pieces and the order, reusing memory.
 func (p *Piecewise) grow(pieces, order int) {
-	p.Order = order
+	p.Order, p.Beyond = order, nil
 	p.Break = resize(p.Break, pieces+1)
 	p.Origin = resize(p.Origin, pieces)
 	p.Width = resize(p.Width, pieces)
@@ -28,6 +32,13 @@ func (p *Piecewise) At(dst, t []float64) {
 		panic("smoothers: dst and t differ in length")
 	}
 	last := len(p.Origin) - 1
+	if p.Beyond != nil {
+		from := sort.SearchFloat64s(t, p.Break[0])
+		to := from + sort.SearchFloat64s(t[from:], p.Break[last+1])
+		p.Beyond.At(dst[:from], t[:from])
+		p.Beyond.At(dst[to:], t[to:])
+		dst, t = dst[from:to], t[from:to]
+	}
 	k := 0
 	for i, ti := range t {
 		for k < last && ti >= p.Break[k+1] {

@@ -1,12 +1,15 @@
 package smoothers
 
 // A tied design is a design with its tied observations gathered: what a local
-// fit sees of them is one point that counts as often as it was observed.
+// fit sees of them is one point that counts as often as it was observed. Its x are
+// taken from an origin, which is not 0 only where no difference is rounded by that.
 type tied struct {
-	x     []float64 // the observations, ascending, length n
-	z     []float64 // the distinct x, length m
-	count []float64 // observations at each, length m
-	start []int     // index of the first of them, length m; nil where m = n
+	origin float64
+	given  []float64 // the design as it was given, length n
+	x      []float64 // the observations from the origin, ascending, length n
+	z      []float64 // the distinct x, length m
+	count  []float64 // observations at each, length m
+	start  []int     // index of the first of them, length m; nil where m = n
 }
 
 // gather finds the distinct values of x, which must be ascending and finite.
@@ -23,7 +26,18 @@ func gather(x []float64, mem *Arena) tied {
 	if m == 0 {
 		panic("smoothers: a design needs an observation")
 	}
-	d := tied{x: x, z: x, count: mem.floats(m)}
+	d := tied{given: x, x: x, count: mem.floats(m)}
+	if first, last := x[0], x[len(x)-1]; first > 0 && last <= 2*first || last < 0 && first >= 2*last {
+		// Sterbenz: a − b is exact for b/2 ≤ a ≤ 2b. Far from 0 this gives points
+		// between the x, where curves are interpolated, a finer grain than the x have.
+		d.origin = first
+		d.x = mem.floats(len(x))
+		for i, v := range x {
+			d.x[i] = v - first
+		}
+		x = d.x
+	}
+	d.z = x
 	if m == len(x) {
 		for i := range d.count {
 			d.count[i] = 1
