@@ -33,5 +33,20 @@ func Families() []Family {
 			Tuning: "bandwidth in units of x, or fraction of the observations", LowestDF: 2,
 			New: func() Smoother { return NewLocal() },
 		},
+		{
+			Name: "smoothing-spline", Doc: "smoothing spline: all distinct x are knots, curvature is penalised",
+			Tuning: "λ of Σ(y − g)² + λ∫g″² in units of x³", LowestDF: 2,
+			New: func() Smoother { return NewSmoothingSpline() },
+		},
+		{
+			Name: "regression-spline", Doc: "least squares on a B-spline or a natural cubic spline with few knots",
+			Tuning: "number of interior knots", LowestDF: 1,
+			New: func() Smoother { return NewRegressionSpline() },
+		},
+		{
+			Name: "polynomial", Doc: "least squares on a global polynomial of degree df − 1",
+			Tuning: "degree", LowestDF: 1,
+			New: func() Smoother { return NewPolynomial() },
+		},
 	}
 }

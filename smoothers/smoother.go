@@ -81,6 +81,7 @@ type Fit struct {
 
 	pieces Piecewise  // storage behind Curve for piecewise polynomials
 	local  localCurve // storage behind Curve for local fits
+	poly   polyCurve  // storage behind Curve for global polynomials
 	work   []float64  // scratch of the family
 }
 
