@@ -15,8 +15,9 @@ import (
 // The options of a struct are its exported fields, those of embedded structs
 // included, that carry the tag option:"name". Further tags: doc (one line for
 // people), unit, oneof (the allowed words, separated by blanks), min, max, above,
-// below (bounds of a number, the last two exclusive), required. The value that a
-// new struct holds is the default.
+// below (bounds of a number, the last two exclusive), required, and type where it is
+// to be called something else than the field's type says. The value that a new struct
+// holds is the default.
 type Option struct {
 	Name     string
 	Doc      string
@@ -128,8 +129,8 @@ func appendFields(fields []field, v reflect.Value) []field {
 			if len(f.Allowed) > 0 {
 				f.Type = "word"
 			}
-			if table := tag.Get("table"); table != "" {
-				f.Type = "table " + table
+			if said := tag.Get("type"); said != "" {
+				f.Type = said
 			}
 			fields = append(fields, f)
 		case v.Type().Field(i).Anonymous && value.Kind() == reflect.Struct:

@@ -5,8 +5,6 @@ import (
 	"fmt"
 	"strings"
 
-	"github.com/pelletier/go-toml/v2"
-
 	"bendtest/sim"
 )
 
@@ -24,32 +22,12 @@ func Parse(name string, src []byte, voc Vocabulary) (*Study, Faults) {
 	root, faults, lossy := readTree(r.src)
 	r.faults, r.lossy = faults, lossy
 	study := r.study(root)
-	if len(r.faults) == 0 {
-		r.strict()
-	}
 	if len(r.faults) > 0 {
 		return nil, settle(r.faults, r.src)
 	}
 	study.Source = src
 	study.Hash = study.hash()
 	return study, nil
-}
-
-// strict has an ordinary decoder read the file too, so that what the tree takes is
-// TOML and nothing else.
-func (r *reader) strict() {
-	var all map[string]any
-	err := toml.Unmarshal(r.src.text, &all)
-	if err == nil {
-		return
-	}
-	at := 0
-	var bad *toml.DecodeError
-	if errors.As(err, &bad) {
-		line, col := bad.Position()
-		at = r.src.lines[line-1] + col - 1
-	}
-	r.fault(syntaxFault(at, err.Error(), "want TOML 1.0"))
 }
 
 // study reads the tree from top to bottom, as far as there is sense in it.

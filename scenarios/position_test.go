@@ -28,6 +28,7 @@ func TestFaultsPointAtTheirByte(t *testing.T) {
 		{"quoted key", "[cells]", "▸\"sead\" = 3\n[cells]"},
 		{"entry of a list", "[30, 100]", "[30, # a comment, and [brackets]\n\n\t▸-5,\n 100]"},
 		{"list in a list", "[30, 100]", "[30, ▸[100], 5]"},
+		{"list behind a comment", "[30, 100]", "[30, # a comment, [and] brackets\n # another\n ▸[100]]"},
 		{"list after a list", "[30, 100]", "[30, [\n1,], ▸[]]"},
 		{"key in an inline table", "f = \"1 - 0.8*x\"", "knots = { x = [0, 0.5, 1], ▸z = 3, y = [1, 2, 3] }"},
 		{"list in an inline table", "f = \"1 - 0.8*x\"", "knots = { x = [0, 0.5, 1], y = [1, ▸true, 2] }"},
@@ -43,6 +44,11 @@ func TestFaultsPointAtTheirByte(t *testing.T) {
 		{"windows line ends", "sd = 0.4", "sd = 0.4\r\n\r\n  ▸ds = 3\r"},
 		{"the second of two tables", "[noise.sensor]", "[noise.sensor]\nlaw = \"normal\"\nsd = 0.4\n[▸noise.sensor]"},
 		{"a value added to", "[cells]", "truth.x = {f = \"x\"}\n[▸truth.x]\n[cells]"},
+		{"a value of a dotted table", "[cells]", "truth.x.f = \"x\"\n[▸truth.x]\n[cells]"},
+		{"a value taken for a table", "[cells]", "seed = 3\n▸seed.a = 3\n[cells]"},
+		{"a value taken for a header", "[cells]", "seed = 3\n[▸seed.a]\n[cells]"},
+		{"a table taken for a list of tables", "[[rule]]", "[[▸cells]]\n[[rule]]"},
+		{"a list of tables, in its last", "[[rule]]", "[[rule]]\nkind = \"gcv\"\nname = \"a\"\n[▸rule.gamma]\n[[rule]]"},
 		{"a table as a list", "[cells]", "[[▸cells]]\n[cells]"},
 	}
 	for _, tt := range tests {

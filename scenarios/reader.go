@@ -45,7 +45,8 @@ func (r *reader) fill(t *node, where string, also []string, structs ...any) bool
 		case i >= 0:
 			ok = r.read(&fields[i], k.name, k.value) && ok
 		case !slices.Contains(also, k.name):
-			f := keyUnknown(k.at, k.name, where, append(namesOf(fields), also...))
+			known := slices.Sorted(slices.Values(append(namesOf(fields), also...)))
+			f := keyUnknown(k.at, k.name, where, slices.Compact(known))
 			meant[f.Near] = true
 			ok = r.fault(f)
 		}

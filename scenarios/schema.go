@@ -13,20 +13,20 @@ type studyKeys struct {
 	HeldOut    int        `option:"held-out" min:"100" max:"1e7" doc:"size of the held-out set of each replicate"`
 	Replicates replicates `option:"replicates" doc:"training and held-out sets drawn in each cell, or a target for the Monte Carlo error"`
 	Keep       string     `option:"keep" oneof:"fits picks summary" doc:"the largest tables wanted: every rung, every pick, or the summaries alone"`
-	Cells      *node      `option:"cells" table:"[cells]" required:"true" doc:"the factorial: sample sizes, and what is combined"`
-	Truth      *node      `option:"truth" table:"[truth.NAME]" required:"true" doc:"true mean curves"`
-	Design     *node      `option:"design" table:"[design.NAME]" required:"true" doc:"designs: how x arises"`
-	Noise      *node      `option:"noise" table:"[noise.NAME]" required:"true" doc:"noises: laws of y − f(x)"`
-	Smoother   *node      `option:"smoother" table:"[[smoother]]" required:"true" doc:"families to fit and their df"`
-	Rule       *node      `option:"rule" table:"[[rule]]" doc:"rules that pick a df; the oracle is always there"`
+	Cells      *node      `option:"cells" type:"table [cells]" required:"true" doc:"the factorial: sample sizes, and what is combined"`
+	Truth      *node      `option:"truth" type:"table [truth.NAME]" required:"true" doc:"true mean curves"`
+	Design     *node      `option:"design" type:"table [design.NAME]" required:"true" doc:"designs: how x arises"`
+	Noise      *node      `option:"noise" type:"table [noise.NAME]" required:"true" doc:"noises: laws of y − f(x)"`
+	Smoother   *node      `option:"smoother" type:"table [[smoother]]" required:"true" doc:"families to fit and their df"`
+	Rule       *node      `option:"rule" type:"table [[rule]]" doc:"rules that pick a df; the oracle is always there"`
 }
 
 // cellKeys are the keys of [cells].
 type cellKeys struct {
 	N      []int    `option:"n" required:"true" min:"3" max:"1e7" doc:"training sample sizes"`
-	Truth  []string `option:"truth" doc:"names of truths; if left out, all, in file order"`
-	Design []string `option:"design" doc:"names of designs; if left out, all, in file order"`
-	Noise  []string `option:"noise" doc:"names of noises; if left out, all, in file order"`
+	Truth  []string `option:"truth" type:"list of names" doc:"names of truths; if left out, all, in file order"`
+	Design []string `option:"design" type:"list of names" doc:"names of designs; if left out, all, in file order"`
+	Noise  []string `option:"noise" type:"list of names" doc:"names of noises; if left out, all, in file order"`
 }
 
 // truthKeys are the keys of [truth.NAME]: f or knots.
