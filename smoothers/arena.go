@@ -5,6 +5,11 @@ package smoothers
 // allocates only until the arena has grown to the largest set it has seen. The
 // zero value is ready. An Arena belongs to one goroutine while ladders are laid.
 type Arena struct {
+	// Lasting says that rungs laid out here will fit many y each, as on a fixed design.
+	// Families then work out more in advance: it moves costs, and no result by more
+	// than rounding.
+	Lasting bool
+
 	slab []float64
 	used int
 	need int // total asked for since the last Reset

@@ -32,21 +32,16 @@ func BenchmarkLocal(b *testing.B) {
 				}
 				b.ReportMetric(float64(b.Elapsed().Microseconds())/float64(b.N*len(dfs)), "µs/rung")
 			})
-			b.Run(fmt.Sprintf("fit/%s/n=%d", name, n), func(b *testing.B) {
-				rung, f := s.On(x, nil).AtDF([]float64{8})[0], Fit{}
-				b.ReportAllocs()
-				for b.Loop() {
-					rung.Fit(y, &f)
-				}
-			})
-			b.Run(fmt.Sprintf("curve/%s/n=%d", name, n), func(b *testing.B) {
-				rung, f := s.On(x, nil).AtDF([]float64{8})[0], Fit{}
-				rung.Fit(y, &f)
-				b.ReportAllocs()
-				for b.Loop() {
-					f.Curve.At(dst, held)
-				}
-			})
+			for _, lasting := range []bool{false, true} {
+				b.Run(fmt.Sprintf("curve/%s/n=%d/lasting=%t", name, n, lasting), func(b *testing.B) {
+					rung, f := s.On(x, &Arena{Lasting: lasting}).AtDF([]float64{8})[0], Fit{}
+					b.ReportAllocs()
+					for b.Loop() {
+						rung.Fit(y, &f)
+						f.Curve.At(dst, held)
+					}
+				})
+			}
 		}
 	}
 }

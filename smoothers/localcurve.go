@@ -2,50 +2,97 @@ package smoothers
 
 import "math"
 
-// A localCurve evaluates a local polynomial fit point by point, from its definition.
+// A localCurve evaluates a local fit from its definition, point by point.
 type localCurve struct {
 	rung *localRung
 	sums []float64 // sum of y at each distinct x
 	fit  localFit
 
-	maker panelMaker
+	low, high float64 // of y
+	tried     bool    // pieces have been asked for,
+	drawn     bool    // and are there
+	pieces    *Piecewise
+	maker     panelMaker
 }
 
-// drawn lays out panels for the curve itself. It reports false if there is no end.
-func (c *localCurve) drawn(y, diff []float64) bool {
-	b, l := &c.maker, c.rung.l
-	b.l, b.basis, b.fit, b.sums = l, l.basis(), &c.fit, c.sums
-	b.room = 2 * panelsMost * b.basis.order
-	b.diff = diff[:1]
-	b.diff[0] = 0
-	lo, hi := y[0], y[0]
-	for _, v := range y {
-		lo, hi = min(lo, v), max(hi, v)
-	}
-	// Where y varies less than a thousandth of its level, rounding is what limits.
-	b.scale = max((hi-lo)/2, 1e-3*max(hi, -lo), math.SmallestNonzeroFloat64)
-	return b.make(c.rung.tuning)
-}
+// pieceworthy is the number of points from which a curve is drawn in pieces first.
+const pieceworthy = 1000
 
-// At implements Curve.
+// At implements Curve. At many points it evaluates Pieces.
 func (c *localCurve) At(dst, t []float64) {
 	if len(dst) != len(t) {
 		panic("smoothers: dst and t differ in length")
 	}
-	l := c.rung.l
-	g := l.gaze(c.rung.tuning)
-	for i, ti := range t {
-		ti -= l.origin
-		if l.hold {
-			ti = min(max(ti, l.z[0]), l.z[len(l.z)-1])
+	if len(t) >= pieceworthy {
+		if p := c.Pieces(); p != nil {
+			p.At(dst, t)
+			return
 		}
-		dst[i] = c.value(&g, ti)
+	}
+	l := c.rung.l
+	lo, hi := math.Inf(-1), math.Inf(1)
+	if l.hold {
+		lo, hi = l.z[0], l.z[len(l.z)-1]
+	}
+	s := c.sweep(len(t))
+	for i, t := range t {
+		dst[i] = c.value(&s, min(max(t-l.origin, lo), hi))
+	}
+}
+
+// Pieces returns the curve as polynomial pieces, at most panelTol times half the range
+// of y away from it, or nil if that would take about as many evaluations as a held-out
+// set has points.
+func (c *localCurve) Pieces() *Piecewise {
+	if c.tried {
+		if c.drawn {
+			return c.pieces
+		}
+		return nil
+	}
+	c.tried = true
+	b, l := &c.maker, c.rung.l
+	b.l, b.basis, b.fit, b.sums = l, l.basis(), &c.fit, c.sums
+	b.diff = resize(b.diff, 1)
+	b.diff[0] = 0
+	b.room = 2 * panelsMost * b.basis.order
+	// Where y varies less than a thousandth of its level, rounding is what limits.
+	b.scale = max((c.high-c.low)/2, 1e-3*max(c.high, -c.low), math.SmallestNonzeroFloat64)
+	if !b.make(c.rung.tuning) {
+		return nil
+	}
+	c.drawn = true
+	l.draw(c.pieces, b.ends, b.weight, c)
+	return c.pieces
+}
+
+// fewTargets is the number of targets up to which a wide window is summed for each.
+const fewTargets = 8
+
+// A sweep follows targets over a design, with sums if wide.
+type sweep struct {
+	wide bool
+	sums localSums
+}
+
+// sweep starts a sweep over a number of targets.
+func (c *localCurve) sweep(targets int) sweep {
+	l, tuning := c.rung.l, c.rung.tuning
+	return sweep{
+		wide: targets > fewTargets && l.wide(tuning),
+		sums: l.sumsOn(tuning, c.sums),
 	}
 }
 
 // value returns the fit at t from the design's origin.
-func (c *localCurve) value(g *gaze, t float64) float64 {
-	g.at(t)
+func (c *localCurve) value(s *sweep, t float64) float64 {
+	if s.wide && s.sums.at(t, false) {
+		return s.sums.value()
+	}
+	g := &s.sums.gaze
+	if !s.wide {
+		g.at(t)
+	}
 	if !c.fit.at(g, t, everyone) {
 		c.fit.through(g, t)
 	}

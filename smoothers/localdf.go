@@ -97,25 +97,41 @@ func (l *localLadder) narrowest() float64 {
 	return gap / 16
 }
 
-// trace returns tr S at a tuning and its derivative by the log of the tuning. With
-// κ the weights of the fit at x_i free of w, S_ii = κ_i and its derivative is
-// −Σ_g (∂a_g/∂log h) κ_g².
+// trace returns tr S at a tuning and its derivative by the log of the tuning.
 func (l *localLadder) trace(tuning float64) (tr, slope float64) {
+	if l.wide(tuning) {
+		s := l.sumsOn(tuning, nil)
+		for i, t := range l.z {
+			var lev, d float64
+			if s.at(t, true) {
+				lev, d = s.leverage()
+			} else {
+				lev, d = l.fit.leverage(&s.gaze, t)
+			}
+			tr += l.count[i] * lev
+			slope += l.count[i] * d * s.gaze.growth(tuning)
+		}
+		return tr, slope
+	}
 	g := l.gaze(tuning)
-	f := &l.fit
 	for i, t := range l.z {
 		g.at(t)
-		f.at(&g, t, everyone)
-		tr += l.count[i] * f.variance()
-		count := l.count[f.lo:f.hi]
-		var d float64
-		for j, c := range count {
-			k := f.kappa(j)
-			d -= c * l.shape.widen(f.u[j], f.w[j]) * k * k
-		}
+		lev, d := l.fit.leverage(&g, t)
+		tr += l.count[i] * lev
 		slope += l.count[i] * d * g.growth(tuning)
 	}
 	return tr, slope
+}
+
+// leverage returns S_ii at an x = t and its derivative by log h. With κ the weights
+// of the fit free of w, S_ii = κ(t) and its derivative is −Σ_g (∂a_g/∂log h) κ_g².
+func (f *localFit) leverage(g *gaze, t float64) (lev, slope float64) {
+	f.at(g, t, everyone)
+	for i, c := range f.l.count[f.lo:f.hi] {
+		k := f.kappa(i)
+		slope -= c * f.l.shape.widen(f.u[i], f.w[i]) * k * k
+	}
+	return f.variance(), slope
 }
 
 // growth returns d log h/d log tuning.

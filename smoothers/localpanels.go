@@ -12,7 +12,7 @@ import "math"
 const (
 	// panelTol bounds e, relative to the sum of absolute weights where that exceeds 1.
 	// What was promised is 1e−10.
-	panelTol = 1e-11
+	panelTol = 3e-11
 	// panelsMost bounds the number of panels. Beyond it, or where panels become as
 	// short as the spacing of numbers, the curve is evaluated point by point.
 	panelsMost = 1 << 14
@@ -24,7 +24,7 @@ const (
 // Panels of kernels of compact support are short, since kinks come thick and fast.
 var (
 	smoothPanels = newPanelBasis(12)
-	kinkedPanels = newPanelBasis(8)
+	kinkedPanels = newPanelBasis(10)
 )
 
 // basis returns the panel basis for the ladder's kernel.
@@ -52,6 +52,8 @@ type panelMaker struct {
 	room   int       // most floats in weight
 	tuning float64
 	gaze   gaze
+	follow bool // windows are wide enough for moving, unless for rows
+	moving localSums
 
 	stretch []float64 // kinks
 	ends    []float64
@@ -72,6 +74,9 @@ type sparse struct {
 // make lays out the panels of a tuning. It reports false if there is no room or no end.
 func (b *panelMaker) make(tuning float64) bool {
 	b.tuning, b.gaze = tuning, b.l.gaze(tuning)
+	if b.follow = b.sums != nil && b.l.wide(tuning); b.follow {
+		b.moving = b.l.sumsOn(tuning, b.sums)
+	}
 	b.ends, b.lo, b.end, b.weight = b.ends[:0], b.lo[:0], b.end[:0], b.weight[:0]
 	b.stretch = b.l.kinks(b.stretch[:0], tuning)
 	s := b.stretch
@@ -127,12 +132,18 @@ func (b *panelMaker) march(from, to, length float64) float64 {
 
 // append appends the functional at t.
 func (b *panelMaker) append(t float64) {
-	b.evaluate(t)
 	f := b.fit
-	if b.sums != nil {
+	switch {
+	case b.follow && b.moving.at(t, false):
+		b.gaze = b.moving.gaze
+		b.lo = append(b.lo, 0)
+		b.weight = append(b.weight, b.moving.value())
+	case b.sums != nil:
+		b.evaluate(t)
 		b.lo = append(b.lo, 0)
 		b.weight = append(b.weight, f.dot(b.sums))
-	} else {
+	default:
+		b.evaluate(t)
 		b.lo = append(b.lo, float64(f.lo))
 		for i, w := range f.w[:f.hi-f.lo] {
 			b.weight = append(b.weight, w*f.kappa(i))

@@ -1,6 +1,9 @@
 package smoothers
 
-import "math"
+import (
+	"math"
+	"slices"
+)
 
 // AtTuning implements Ladder.
 func (l *localLadder) AtTuning(tunings []float64) []Rung {
@@ -63,39 +66,48 @@ func (r *localRows) apply(dst, sums []float64) {
 	}
 }
 
-// rowsKept bounds the size of the rows kept per rung: half a megabyte.
-const rowsKept = 1 << 16
+const (
+	// rowsKept bounds the size of the rows of S kept per rung, in floats.
+	rowsKept = 1 << 14
+	// nodesKept bounds that of the functionals at the nodes of its panels.
+	nodesKept = 1 << 17
+)
 
 // lay works out all of a rung that y does not touch.
 func (l *localLadder) lay(r *Rung, s *localRung) {
-	n, m := len(l.x), len(l.z)
+	n := len(l.x)
 	*s = localRung{l: l, tuning: r.Tuning}
 	r.solver = s
 	r.Leverage, r.RowNorm2, r.Remainder = l.mem.floats(n), l.mem.floats(n), l.mem.floats(n)
+	if l.window(r.Tuning)*float64(len(l.z)) > rowsKept {
+		l.layBySums(r)
+	} else {
+		l.layByRows(r, s)
+	}
+	if math.IsNaN(r.TrS + r.TrSTS) {
+		*r = Rung{DF: r.DF, Tuning: r.Tuning, Status: RankDeficient, Note: noteFew}
+		return
+	}
+	l.spread(r.Leverage, r.Leverage)
+	l.spread(r.Remainder, r.Remainder)
+	l.spread(r.RowNorm2, r.RowNorm2)
+	if s.rows.end != nil && l.mem != nil && l.mem.Lasting {
+		s.panels = l.layout(r.Tuning)
+	}
+}
+
+// layByRows lays a rung by way of the rows of S, and keeps them if they fit.
+func (l *localLadder) layByRows(r *Rung, s *localRung) {
+	m := len(l.z)
 	lo, end := l.mem.floats(m), l.mem.floats(m)
 	if l.store == nil {
-		l.store = l.mem.floats(min(m*m, rowsKept))
+		l.store = l.mem.floats(min(m*m, 2*rowsKept))
 	}
 	used := 0
 	g := l.gaze(r.Tuning)
 	for i, t := range l.z {
 		g.at(t)
-		row, lev, rem := l.row(&g, i)
-		if math.IsNaN(lev) {
-			*r = Rung{DF: r.DF, Tuning: r.Tuning, Status: RankDeficient, Note: noteFew}
-			return
-		}
-		var rest float64
-		c := l.count[l.fit.lo : l.fit.lo+len(row)]
-		for j, v := range row {
-			rest += c[j] * v * v
-		}
-		own := rest + (l.count[i]-1)*lev*lev
-		r.Leverage[i], r.Remainder[i], r.RowNorm2[i] = lev, rem, own+lev*lev
-		r.TrS += l.count[i] * lev
-		r.TrSTS += l.count[i] * r.RowNorm2[i]
-		r.DFResidual += l.count[i] * (own + rem*rem)
-		row[i-l.fit.lo] = lev
+		row := l.layRow(r, &g, i)
 		lo[i] = float64(l.fit.lo)
 		if used+len(row) <= len(l.store) {
 			copy(l.store[used:], row)
@@ -103,12 +115,46 @@ func (l *localLadder) lay(r *Rung, s *localRung) {
 		used += len(row)
 		end[i] = float64(used)
 	}
-	l.spread(r.Leverage, r.Leverage)
-	l.spread(r.Remainder, r.Remainder)
-	l.spread(r.RowNorm2, r.RowNorm2)
 	if used <= len(l.store) {
 		s.rows = localRows{lo: lo, end: end, weight: l.keep(l.store[:used])}
-		s.panels = l.layout(r.Tuning)
+	}
+}
+
+// layRow fills in what a rung says of the i-th distinct x, where g is, and returns the
+// row of S, from the distinct x number l.fit.lo on.
+func (l *localLadder) layRow(r *Rung, g *gaze, i int) []float64 {
+	row, lev, rem := l.row(g, i)
+	var rest float64
+	for j, c := range l.count[l.fit.lo : l.fit.lo+len(row)] {
+		rest += c * row[j] * row[j]
+	}
+	row[i-l.fit.lo] = lev
+	l.enter(r, i, lev, rem, rest+(l.count[i]-1)*lev*lev)
+	return row
+}
+
+// enter fills in the leverage of the i-th distinct x, its complement rem, and the
+// sum of squares of the rest of its row.
+func (l *localLadder) enter(r *Rung, i int, lev, rem, rest float64) {
+	c := l.count[i]
+	r.Leverage[i], r.Remainder[i], r.RowNorm2[i] = lev, rem, rest+lev*lev
+	r.TrS += c * lev
+	r.TrSTS += c * (rest + lev*lev)
+	r.DFResidual += c * (rest + rem*rem)
+}
+
+// layBySums lays a rung with wide windows. Σ_j S_ij² is a combination of the moments
+// of the squared kernel. A leverage of a half and more, whose complement would
+// cancel, is left to the row.
+func (l *localLadder) layBySums(r *Rung) {
+	s, q := l.sumsOn(r.Tuning, nil), l.squaredSumsOn(r.Tuning)
+	for i, t := range l.z {
+		if s.at(t, false) && s.k0 < 0.5 && q.moments(t, false) {
+			lev := s.k0
+			l.enter(r, i, lev, 1-lev, s.norm2(&q)-lev*lev)
+			continue
+		}
+		l.layRow(r, &s.gaze, i)
 	}
 }
 
@@ -126,8 +172,8 @@ func (l *localLadder) layout(tuning float64) panelLayout {
 		m := len(l.z)
 		b.l, b.basis, b.fit, b.scale = l, l.basis(), &l.fit, 1
 		b.diff = l.mem.floats(m)
-		b.weight = l.mem.floats(rowsKept)[:0]
-		b.room = rowsKept
+		b.weight = l.mem.floats(nodesKept)[:0]
+		b.room = nodesKept
 	}
 	if !b.make(tuning) {
 		return panelLayout{}
@@ -168,42 +214,27 @@ func (l *localLadder) row(g *gaze, i int) (row []float64, lev, rem float64) {
 func (s *localRung) solve(y []float64, f *Fit) {
 	l := s.l
 	m := len(l.z)
-	c := &f.local
 	nodes := len(s.panels.rows.end)
-	f.work = resize(f.work, 2*m+l.scratch()+nodes)
+	f.work = resize(f.work, m+nodes+l.scratch())
 	sums, values := f.work[:m], f.work[m:m+nodes]
 	l.sums(sums, y)
+	c := &f.local
 	c.rung, c.sums, c.fit = s, sums, l.fitOn(f.work[m+nodes:])
-	switch {
-	case nodes > 0:
+	c.pieces, c.tried, c.drawn = &f.pieces, false, false
+	c.low, c.high = slices.Min(y), slices.Max(y)
+	f.Curve = c
+	if nodes > 0 {
 		s.panels.rows.apply(values, sums)
 		l.draw(&f.pieces, s.panels.ends, values, c)
 		f.Curve = &f.pieces
-	case c.drawn(y, f.work[m+nodes+l.scratch():]):
-		l.draw(&f.pieces, c.maker.ends, c.maker.weight, c)
-		f.Curve = &f.pieces
-	default:
-		f.Curve = c
 	}
-	s.fitted(f, c)
-}
-
-// fitted sets f.Fitted, after the curve: from the rows of S, or where these were too
-// large to keep, from the curve.
-func (s *localRung) fitted(f *Fit, c *localCurve) {
-	l := s.l
-	m := len(l.z)
-	switch {
-	case s.rows.end != nil:
-		s.rows.apply(f.Fitted[:m], c.sums)
-	case f.Curve == c:
-		g := l.gaze(s.tuning)
+	if s.rows.end != nil {
+		s.rows.apply(f.Fitted[:m], sums)
+	} else {
+		w := c.sweep(m)
 		for i, t := range l.z {
-			f.Fitted[i] = c.value(&g, t)
+			f.Fitted[i] = c.value(&w, t)
 		}
-	default:
-		f.Curve.At(f.Fitted, l.given)
-		return
 	}
 	l.spread(f.Fitted, f.Fitted[:m])
 }

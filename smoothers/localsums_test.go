@@ -1,0 +1,71 @@
+package smoothers
+
+import (
+	"math"
+	"testing"
+)
+
+// sumsTol is what sums of powers may lose against the fit point by point: with terms
+// 100 times the weights, tricube of degree 2 at the ends of the data has moments
+// whose determinant is a thousandth of its terms.
+const sumsTol = 2e-11
+
+func TestSumsEqualPointByPoint(t *testing.T) {
+	for _, n := range []int{30, 100, 300} {
+		x := uniformDesign(n, 1)
+		if n == 100 {
+			for i := range x { // ties, and an origin far from 0
+				x[i] = 1e4 + math.Round(x[i]*70)/70
+			}
+		}
+		for name, s := range allLocal() {
+			l := s.On(x, nil).(*localLadder)
+			for _, df := range []float64{2, 3, 5, 8, 14, 30} {
+				if tuning, status, _ := l.tune(df); status == OK && l.wide(tuning) {
+					compareSums(t, name, l, tuning)
+				}
+			}
+		}
+	}
+}
+
+// compareSums holds leverages, their slopes, row norms and values by sums against localFit.
+func compareSums(t *testing.T, name string, l *localLadder, tuning float64) {
+	t.Helper()
+	y := make([]float64, len(l.z))
+	l.sums(y, wiggle(l.given, 1))
+	s, q, g := l.sumsOn(tuning, y), l.squaredSumsOn(tuning), l.gaze(tuning)
+	check := func(what string, at, got, want, tol float64) {
+		if !(math.Abs(got-want) <= tol*math.Abs(want)) {
+			t.Errorf("%s, n = %d, tuning %g: %s at %g is %.15g, want %.15g", name, len(l.x), tuning, what, at, got, want)
+		}
+	}
+	left := 0
+	for i, v := range l.z {
+		g.at(v)
+		if !s.at(v, true) || !q.moments(v, false) {
+			left++
+			continue
+		}
+		lev, slope := s.leverage()
+		want, wantSlope := l.fit.leverage(&g, v)
+		check("leverage", v, lev, want, sumsTol)
+		check("its slope", v, slope, wantSlope, 1e-8) // a guide for steps only
+		row, _, _ := l.row(&g, i)
+		norm := want * want * l.count[i]
+		for j, w := range row {
+			norm += w * w * l.count[l.fit.lo+j]
+		}
+		check("row norm", v, s.norm2(&q), norm, sumsTol)
+	}
+	if left > len(l.z)/5 {
+		t.Errorf("%s, tuning %g: sums gave up at %d of %d points", name, tuning, left, len(l.z))
+	}
+	c := localCurve{rung: &localRung{l: l, tuning: tuning}, sums: y, fit: l.fitOn(make([]float64, l.scratch()))}
+	direct := sweep{sums: l.sumsOn(tuning, y)}
+	for _, v := range targets(l.x, 4) {
+		if s.at(v, false) {
+			check("value", v, s.value(), c.value(&direct, v), sumsTol)
+		}
+	}
+}
