@@ -3,8 +3,8 @@ package scenarios
 import "reflect"
 
 // Label is the default label of a smoother or rule: its kind, then the required
-// options by value, then those away from their defaults: words by value, truths by
-// name, others by name and value.
+// options by value, then those away from their defaults: words by value, what is true
+// by name, others by name and value.
 func Label(kind string, defaults, options any) string {
 	usual := fieldsOf(defaults)
 	for i, f := range fieldsOf(options) {

@@ -29,13 +29,13 @@ func (r *reader) tables(what string, n *node) []*node {
 	})
 }
 
-// smoothers reads all [[smoother]].
-func (r *reader) smoothers(n *node) []Smoother {
-	var list []Smoother
+// smoothers reads all [[smoother]]. What it returns is complete if none has a fault.
+func (r *reader) smoothers(n *node) (list []Smoother, complete bool) {
 	labels := make(map[string]int)
 	families := smoothers.Families()
 	const where = "in [[smoother]]"
-	for _, t := range r.tables("smoother", n) {
+	tables := r.tables("smoother", n)
+	for _, t := range tables {
 		keys := newSmootherKeys()
 		i := keys.Family.chosen(t, "family")
 		if i < 0 {
@@ -57,25 +57,28 @@ func (r *reader) smoothers(n *node) []Smoother {
 			list = append(list, m)
 		}
 	}
-	return list
+	return list, len(list) == len(tables) && len(list) > 0
 }
 
-// wholeDF reports df that a family cannot have since its df are whole numbers.
+// wholeDF reports df that a family cannot have since its df are whole numbers: all
+// that stand in a list, the first of a range.
 func (r *reader) wholeDF(t *node, family smoothers.Family, dfs []float64) bool {
 	if family.Name != "regression-spline" && family.Name != "polynomial" {
 		return true
 	}
+	ok := true
 	for i, df := range dfs {
-		if df == math.Trunc(df) {
-			continue
-		}
 		at := t.get("df")
 		if at.kind == listNode {
 			at = at.items[i]
+		} else if !ok {
+			break
 		}
-		return r.fault(gridFault(at.at, fmt.Sprintf("df = %s for a %s", number(df), family.Name), "whole numbers, such as \"4..16\""))
+		if df != math.Trunc(df) {
+			ok = r.fault(gridFault(at.at, fmt.Sprintf("df = %s for a %s", number(df), family.Name), "whole numbers, such as \"4..16\""))
+		}
 	}
-	return true
+	return ok
 }
 
 // labelled reports whether a label can be one and is not taken; labels holds the
@@ -128,26 +131,32 @@ func (r *reader) rules(n *node) (list []Rule, tables []*node) {
 	return list, tables
 }
 
-// fit reports rules that cannot work with the smoothers or the cells: a fixed df
-// that no smoother has, more folds than the smallest sample has observations.
-func (r *reader) fit(rules []Rule, tables []*node, all []Smoother, ns []int, nAt *node) {
+// onGrid reports fixed df that no smoother has.
+func (r *reader) onGrid(rules []Rule, tables []*node, all []Smoother) {
 	var union []float64
 	for _, m := range all {
 		union = append(union, m.DF...)
 	}
 	slices.Sort(union)
 	union = slices.Compact(union)
-	ns = slices.DeleteFunc(slices.Clone(ns), func(n int) bool { return n == 0 }) // faulty ones
 	for i, rule := range rules {
 		fields := fieldsOf(rule.Options)
-		if k := indexOf(fields, "df"); k >= 0 && rule.Kind == "fixed" && len(union) > 0 {
+		if k := indexOf(fields, "df"); k >= 0 && rule.Kind == "fixed" {
 			if df := fields[k].value.Float(); !slices.Contains(union, df) {
 				r.fault(dfOffGrid(tables[i].where("df"), df, union))
 			}
 		}
-		if k := indexOf(fields, "k"); k >= 0 && rule.Kind == "kfold" && len(ns) > 0 && fields[k].value.CanInt() {
-			if folds, least := fields[k].value.Int(), slices.Min(ns); folds > int64(least) {
-				r.fault(optionRefused(tables[i].where("k"), fmt.Sprintf("k = %d", folds), fmt.Sprintf("want at most %d, the smallest n on line %d", least, r.src.line(nAt.at))))
+	}
+}
+
+// enoughToFold reports rules with more folds than the smallest sample, least, has
+// observations; line is where it stands.
+func (r *reader) enoughToFold(rules []Rule, tables []*node, least, line int) {
+	for i, rule := range rules {
+		fields := fieldsOf(rule.Options)
+		if k := indexOf(fields, "k"); k >= 0 && rule.Kind == "kfold" {
+			if folds := fields[k].value.Int(); folds > int64(least) {
+				r.fault(optionRefused(tables[i].where("k"), fmt.Sprintf("k = %d", folds), fmt.Sprintf("want at most %d, the smallest n on line %d", least, line)))
 			}
 		}
 	}

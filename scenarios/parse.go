@@ -3,6 +3,7 @@ package scenarios
 import (
 	"errors"
 	"fmt"
+	"slices"
 	"strings"
 
 	"bendtest/sim"
@@ -42,10 +43,15 @@ func (r *reader) study(root *node) *Study {
 	}
 	truths, designs, noises := r.truths(keys.Truth), r.designs(keys.Design), r.noises(keys.Noise)
 	lists := r.cellLists(keys.Cells)
-	s.Smoothers = r.smoothers(keys.Smoother)
+	smoothers, complete := r.smoothers(keys.Smoother)
 	rules, tables := r.rules(keys.Rule)
-	s.Rules = rules
-	r.fit(rules, tables, s.Smoothers, lists.N, keys.Cells)
+	s.Smoothers, s.Rules = smoothers, rules
+	if complete {
+		r.onGrid(rules, tables, smoothers)
+	}
+	if len(lists.N) > 0 && !slices.Contains(lists.N, 0) { // 0 is a faulty one
+		r.enoughToFold(rules, tables, slices.Min(lists.N), r.src.line(keys.Cells.where("n")))
+	}
 
 	f := &s.factors
 	f.lists = lists
