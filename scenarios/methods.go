@@ -63,7 +63,7 @@ func (r *reader) smoothers(n *node) (list []Smoother, complete bool) {
 // wholeDF reports df that a family cannot have since its df are whole numbers: all
 // that stand in a list, the first of a range.
 func (r *reader) wholeDF(t *node, family smoothers.Family, dfs []float64) bool {
-	if family.Name != "regression-spline" && family.Name != "polynomial" {
+	if !family.WholeDF {
 		return true
 	}
 	ok := true

@@ -81,7 +81,7 @@ func (c *Cell) setNoise() error {
 	if err != nil {
 		return err
 	}
-	c.SD, c.NoiseVariance, err = c.Noise.level(c.signalVariance(), scale2)
+	c.SD, c.NoiseVariance, err = c.Noise.level(c.signalVariance, scale2)
 	if err != nil {
 		return err
 	}

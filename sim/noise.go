@@ -85,10 +85,11 @@ func (n *Noise) describe() string {
 }
 
 // level returns the standard deviation where scale is 1 and the noise variance
-// averaged over the design law, for a truth with variance varF over that law and
-// scale2 = E scale(X)².
-func (n *Noise) level(varF, scale2 float64) (sd, variance float64, err error) {
+// averaged over the design law. signalVariance works out the variance of the truth
+// over that law, where the level needs it; scale2 is E scale(X)².
+func (n *Noise) level(signalVariance func() float64, scale2 float64) (sd, variance float64, err error) {
 	ratio := func(option string, value, signal float64) error {
+		varF := signalVariance()
 		if !(varF > 0) {
 			return &OptionError{option, fmt.Sprint(value), "sd or variance, since the truth is constant over the design"}
 		}

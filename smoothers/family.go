@@ -17,6 +17,7 @@ type Family struct {
 	Doc      string          // one line for people
 	Tuning   string          // what Rung.Tuning means
 	LowestDF float64         // smallest df the defaults attain on a good design
+	WholeDF  bool            // only whole df can be attained
 	New      func() Smoother // a pointer to the options struct, at its defaults
 }
 
@@ -40,12 +41,12 @@ func Families() []Family {
 		},
 		{
 			Name: "regression-spline", Doc: "least squares on a B-spline or a natural cubic spline with few knots",
-			Tuning: "number of interior knots", LowestDF: 1,
+			Tuning: "number of interior knots", LowestDF: 1, WholeDF: true,
 			New: func() Smoother { return NewRegressionSpline() },
 		},
 		{
 			Name: "polynomial", Doc: "least squares on a global polynomial of degree df − 1",
-			Tuning: "degree", LowestDF: 1,
+			Tuning: "degree", LowestDF: 1, WholeDF: true,
 			New: func() Smoother { return NewPolynomial() },
 		},
 	}
