@@ -82,7 +82,7 @@ func (h *HeldOut) Noise() float64 { return h.noise }
 // Score scores a curve. finite is false where the curve leaves the numbers.
 func (h *HeldOut) Score(c smoothers.Curve) (s HeldOutScore, finite bool) {
 	var below, in, above sums
-	if p, ok := c.(*smoothers.Piecewise); ok && p.Order <= maxOrder {
+	if p, ok := c.(*smoothers.Piecewise); ok && p.Order <= maxOrder && p.Beyond == nil {
 		w := walker{set: h, curve: p}
 		below = w.sum(0, h.inside[0])
 		in = w.sum(h.inside[0], h.inside[1])

@@ -127,9 +127,9 @@ type jsonFit struct {
 func fitsJSON(w io.Writer, sheet *scoring.Sheet, found []fitResult) error {
 	list := []jsonFit{}
 	for i := range found {
-		options := map[string]json.RawMessage{}
-		for _, o := range scenarios.OptionsOf(found[i].smoother) {
-			options[o.Name] = json.RawMessage(o.Default)
+		options, err := optionValues(found[i].smoother)
+		if err != nil {
+			return err
 		}
 		for _, r := range found[i].readings {
 			c := r.Criteria
@@ -144,4 +144,20 @@ func fitsJSON(w io.Writer, sheet *scoring.Sheet, found []fitResult) error {
 	out := json.NewEncoder(w)
 	out.SetIndent("", " ")
 	return out.Encode(list)
+}
+
+// optionValues returns the options of a smoother as JSON values.
+func optionValues(s smoothers.Smoother) (map[string]json.RawMessage, error) {
+	values := map[string]json.RawMessage{}
+	for _, o := range scenarios.OptionsOf(s) {
+		text := []byte(o.Default)
+		if !json.Valid(text) { // a word
+			var err error
+			if text, err = json.Marshal(o.Default); err != nil {
+				return nil, err
+			}
+		}
+		values[o.Name] = text
+	}
+	return values, nil
 }
