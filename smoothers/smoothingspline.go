@@ -100,6 +100,7 @@ const (
 func (l *splineLadder) AtDF(dfs []float64) []Rung {
 	rungs := make([]Rung, len(dfs))
 	m, least := float64(len(l.design.z)), float64(l.order)
+	finder := newDFFinder(least, m, leastLogLambda, mostLogLambda, l.trace, l.mem)
 	for i, df := range dfs {
 		switch {
 		case !(df >= least && df <= m) || m < 2:
@@ -109,7 +110,7 @@ func (l *splineLadder) AtDF(dfs []float64) []Rung {
 		case df == m:
 			rungs[i] = l.rung(df, leastLogLambda)
 		default:
-			theta, found := solveDF(df, least, m, leastLogLambda, mostLogLambda, l.guess(df), l.trace)
+			theta, found := finder.find(df, l.guess(df))
 			if !found {
 				rungs[i] = Rung{DF: df, Status: DFUnattainable}
 				continue
