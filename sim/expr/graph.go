@@ -1,88 +1,74 @@
 package expr
 
-import (
-	"math"
-	"strconv"
-)
+import "math"
 
-// Kinds of node that are not operations.
-const (
-	kindConstant = -1
-	kindX        = -2
-)
-
-// A node is a constant, x, or an operation on earlier nodes.
-type node struct {
-	op    int // index of the operation, or a kind
-	args  [3]int
-	value float64 // of a constant
-}
-
-// A graph holds an expression with each distinct subexpression once, arguments
-// before the operations on them.
+// A graph holds an expression with each distinct part once and all that is constant
+// worked out, arguments before the operations on them.
 type graph struct {
 	nodes []node
 	index map[node]int
+	root  int // place of the whole
 }
 
-func newGraph() graph { return graph{index: map[node]int{}} }
+// lower makes the graph of a tree.
+func (t tree) lower() *graph {
+	g := &graph{index: map[node]int{}}
+	place := make([]int, len(t))
+	for i, n := range t {
+		n.name = ""
+		if n.op >= 0 {
+			for k := range operations[n.op].Args {
+				n.args[k] = place[n.args[k]]
+			}
+			n = g.folded(n)
+		}
+		place[i] = g.intern(n)
+	}
+	g.root = place[len(t)-1]
+	return g
+}
 
 // intern returns the place of a node, adding it if it is new.
 func (g *graph) intern(n node) int {
-	if i, ok := g.index[n]; ok {
-		return i
+	i, known := g.index[n]
+	if !known {
+		i = len(g.nodes)
+		g.nodes = append(g.nodes, n)
+		g.index[n] = i
 	}
-	g.nodes = append(g.nodes, n)
-	g.index[n] = len(g.nodes) - 1
-	return len(g.nodes) - 1
+	return i
 }
 
-func (g *graph) constant(v float64) int { return g.intern(node{op: kindConstant, value: v}) }
-func (g *graph) x() int                 { return g.intern(node{op: kindX}) }
-
-// apply adds an operation on nodes; on constants alone it is worked at once.
-func (g *graph) apply(op int, args ...int) int {
-	n := node{op: op}
-	constant := true
-	var v [3]float64
-	for i, a := range args {
-		n.args[i] = a
-		v[i] = g.nodes[a].value
-		constant = constant && g.nodes[a].op == kindConstant
-	}
-	if constant {
-		out := make([]float64, 1)
-		operations[op].apply(out, v[0:1], v[1:2], v[2:3])
-		if !math.IsNaN(out[0]) && !math.IsInf(out[0], 0) { // those have no literal
-			return g.constant(out[0])
+// folded works an operation out if its arguments are constants.
+func (g *graph) folded(n node) node {
+	var v [3][1]float64
+	for k := range operations[n.op].Args {
+		a := g.nodes[n.args[k]]
+		if a.op != kindConstant {
+			return n
 		}
+		v[k][0] = a.value()
 	}
-	return g.intern(n)
+	var out [1]float64
+	operations[n.op].apply(out[:], v[0][:], v[1][:], v[2][:])
+	return node{op: kindConstant, bits: math.Float64bits(out[0])}
 }
 
-// text writes node i so that Compile makes the same graph of it.
-func (g *graph) text(i int) string {
-	n := g.nodes[i]
-	switch n.op {
-	case kindX:
-		return "x"
-	case kindConstant:
-		if n.value < 0 {
-			return "(-" + strconv.FormatFloat(-n.value, 'g', -1, 64) + ")"
+// uses finds the nodes that the root needs, and the last node that uses each.
+func (g *graph) uses() (used []bool, last []int) {
+	used, last = make([]bool, len(g.nodes)), make([]int, len(g.nodes))
+	used[g.root] = true
+	last[g.root] = len(g.nodes) // the result outlives all
+	for i := len(g.nodes) - 1; i >= 0; i-- {
+		n := g.nodes[i]
+		if !used[i] || n.op < 0 {
+			continue
 		}
-		return strconv.FormatFloat(n.value, 'g', -1, 64)
+		for k := range operations[n.op].Args {
+			a := n.args[k]
+			used[a] = true
+			last[a] = max(last[a], i)
+		}
 	}
-	f := operations[n.op]
-	arg := func(k int) string { return g.text(n.args[k]) }
-	switch {
-	case f.Name == "neg":
-		return "(-" + arg(0) + ")"
-	case f.Name == "?:":
-		return "(" + arg(0) + " ? " + arg(1) + " : " + arg(2) + ")"
-	case f.infix:
-		return "(" + arg(0) + " " + f.Name + " " + arg(1) + ")"
-	case f.Args == 1:
-		return f.Name + "(" + arg(0) + ")"
-	}
-	return f.Name + "(" + arg(0) + ", " + arg(1) + ")"
+	return used, last
 }

@@ -6,24 +6,6 @@ import (
 	"unicode/utf8"
 )
 
-// A SyntaxError is the first fault of an expression.
-type SyntaxError struct {
-	At    int    // byte offset in the text
-	Found string // what stands there
-	Want  string // what is allowed
-	Near  string // the nearest known name, or ""
-}
-
-func (e *SyntaxError) Error() string {
-	if e.Near != "" {
-		return fmt.Sprintf("found %s (did you mean %q? %s)", e.Found, e.Near, e.Want)
-	}
-	return fmt.Sprintf("found %s (%s)", e.Found, e.Want)
-}
-
-// Offset is the byte offset of the fault in the text.
-func (e *SyntaxError) Offset() int { return e.At }
-
 // A token is a number, a name, an operator, or the end (kind 0).
 type token struct {
 	kind byte // 'n' number, 'a' name, 'o' operator, 0 end

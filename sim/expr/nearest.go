@@ -1,10 +1,19 @@
 package expr
 
-import "slices"
+import (
+	"slices"
+	"strings"
+)
 
 // Nearest returns the known name closest to got by edit distance, or "" if none is
-// within a third of its length or if two tie: a wrong guess is worse than none.
+// within a third of its length or if two tie: a wrong guess is worse than none. A
+// name that differs in capitals only is the closest.
 func Nearest(got string, known []string) string {
+	for _, k := range known {
+		if strings.EqualFold(got, k) {
+			return k
+		}
+	}
 	best, least, tie := "", 1+len(got)/3, false
 	for _, k := range known {
 		switch d := editDistance(got, k); {

@@ -3,55 +3,57 @@ package expr
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strconv"
 	"strings"
 )
 
 // Limits on one expression, so that a study file from somebody else cannot exhaust
-// the machine.
+// the machine. The canonical text of what is within them is within them too: it has
+// no more parts, and nests no deeper.
 const (
-	maxText  = 4096 // bytes
-	maxDepth = 100  // nested calls, parentheses, signs and powers
-	maxNodes = 1000 // operations and constants
+	maxText  = 32 << 10 // bytes
+	maxNodes = 1000     // numbers, names and operations
+	maxDepth = 100      // nested calls, parentheses, powers and choices
 )
 
-// A parser reads one expression into a graph.
+// A parser reads one expression into a tree, operators by how tightly they bind
+// (Pratt 1973, Proc. 1st ACM Symposium on Principles of Programming Languages, 41).
 type parser struct {
 	text  string
 	tok   token
 	depth int
-	graph graph
+	tree  tree
 }
 
 // Compile reads an expression. The error is a *SyntaxError.
 func Compile(text string) (*Expression, error) {
 	if len(text) > maxText {
-		return nil, &SyntaxError{At: maxText, Found: fmt.Sprintf("%d bytes", len(text)), Want: fmt.Sprintf("want at most %d", maxText)}
+		return nil, &SyntaxError{At: maxText, Found: fmt.Sprintf("a text of %d bytes", len(text)), Want: fmt.Sprintf("want at most %d", maxText)}
 	}
-	p := &parser{text: text, graph: newGraph()}
+	p := &parser{text: text}
 	p.tok = next(text, 0)
-	root, err := p.wholeText()
-	if err != nil {
+	if err := p.wholeText(); err != nil {
 		return nil, err
 	}
-	return p.graph.program(root), nil
+	return p.tree.lower().program(p.tree.text(len(p.tree)-1, anything)), nil
 }
 
-// wholeText reads the expression and requires the end; a bare name of a published
+// wholeText reads the expression and requires the end. The bare name of a published
 // function stands for its call at x.
-func (p *parser) wholeText() (int, error) {
-	name := strings.TrimSpace(p.text)
-	if i := operation(name); i >= 0 && operations[i].Args == 1 && !operations[i].infix {
-		return p.node(i, p.graph.x())
+func (p *parser) wholeText() error {
+	if op := operation(strings.TrimSpace(p.text)); op >= 0 && operations[op].form == published {
+		x := p.tree.add(node{op: kindX})
+		p.tree.add(node{op: op, args: [3]int{x}})
+		return nil
 	}
-	root, err := p.ternary()
-	if err != nil {
-		return 0, err
+	if _, err := p.expression(anything); err != nil {
+		return err
 	}
 	if p.tok.kind != 0 {
-		return 0, p.unexpected("want an operator or the end")
+		return p.unexpected("want an operator or the end")
 	}
-	return root, nil
+	return nil
 }
 
 // unexpected makes the error for the current token.
@@ -74,110 +76,97 @@ func (p *parser) expect(s string) error {
 	return nil
 }
 
-// node adds an operation to the graph, within the limit.
-func (p *parser) node(op int, args ...int) (int, error) {
-	if len(p.graph.nodes) >= maxNodes {
-		return 0, &SyntaxError{At: p.tok.at, Found: "too long an expression", Want: fmt.Sprintf("want at most %d operations", maxNodes)}
+// node adds a node to the tree, within the limit.
+func (p *parser) node(n node) (int, error) {
+	if len(p.tree) == maxNodes {
+		return 0, &SyntaxError{At: p.tok.at, Found: "too long an expression", Want: fmt.Sprintf("want at most %d numbers, names and operations", maxNodes)}
 	}
-	return p.graph.apply(op, args...), nil
+	return p.tree.add(n), nil
 }
 
-// deeper guards recursion.
-func (p *parser) deeper(read func() (int, error)) (int, error) {
-	if p.depth == maxDepth {
-		return 0, p.unexpected(fmt.Sprintf("want at most %d levels of nesting", maxDepth))
-	}
-	p.depth++
-	defer func() { p.depth-- }()
-	return read()
-}
-
-// ternary reads cond ? a : b, or less.
-func (p *parser) ternary() (int, error) {
-	cond, err := p.comparison()
-	if err != nil || !p.is("?") {
-		return cond, err
-	}
-	p.advance()
-	yes, err := p.deeper(p.ternary)
-	if err != nil {
-		return 0, err
-	}
-	if err := p.expect(":"); err != nil {
-		return 0, err
-	}
-	no, err := p.deeper(p.ternary)
-	if err != nil {
-		return 0, err
-	}
-	return p.node(operation("?:"), cond, yes, no)
-}
-
-// comparison reads a < b and its like, or less; comparisons do not chain.
-func (p *parser) comparison() (int, error) {
-	return p.binary([]string{"<", "<=", ">", ">=", "==", "!="}, p.sum, false)
-}
-
-// sum reads a + b − …, or less.
-func (p *parser) sum() (int, error) { return p.binary([]string{"+", "-"}, p.product, true) }
-
-// product reads a * b / …, or less.
-func (p *parser) product() (int, error) { return p.binary([]string{"*", "/"}, p.signed, true) }
-
-// binary reads operands joined by left-associative operators of one rank.
-func (p *parser) binary(ops []string, operand func() (int, error), chains bool) (int, error) {
-	left, err := operand()
-	for err == nil {
-		op := ""
-		for _, o := range ops {
-			if p.is(o) {
-				op = o
-			}
+// expression reads as far as operators bind at least as tightly as least.
+func (p *parser) expression(least level) (int, error) {
+	left, err := p.operand()
+	for tightest := single; err == nil; {
+		op := p.operator()
+		if op < 0 {
+			return left, nil
 		}
-		if op == "" {
+		l := operations[op].level
+		if l < least || l > tightest {
 			return left, nil
 		}
 		p.advance()
-		var right int
-		if right, err = operand(); err != nil {
+		n := node{op: op, args: [3]int{left}}
+		switch l {
+		case anything:
+			err = p.choices(&n)
+		case raising:
+			n.args[1], err = p.nested(raising)
+		default:
+			n.args[1], err = p.expression(l + 1)
+		}
+		if err != nil {
 			return 0, err
 		}
-		if left, err = p.node(operation(op), left, right); err != nil || !chains {
-			return left, err
+		if l == comparing {
+			tightest = anything // 1 < x < 2 would not mean what it seems to
 		}
+		left, err = p.node(n)
 	}
 	return 0, err
 }
 
-// signed reads −a, which binds looser than ^.
-func (p *parser) signed() (int, error) {
-	switch {
-	case p.is("-"):
-		p.advance()
-		a, err := p.deeper(p.signed)
-		if err != nil {
-			return 0, err
-		}
-		return p.node(operation("neg"), a)
-	case p.is("+"):
-		p.advance()
-		return p.deeper(p.signed)
+// operator is the operation that the current token writes after its first argument,
+// or −1.
+func (p *parser) operator() int {
+	if p.tok.kind != 'o' {
+		return -1
 	}
-	return p.power()
+	return slices.IndexFunc(operations[:], func(f Function) bool {
+		return f.form == written && f.Args > 1 && f.Name == p.tok.text
+	})
 }
 
-// power reads a ^ b, right-associative; the exponent may have a sign.
-func (p *parser) power() (int, error) {
-	base, err := p.atom()
-	if err != nil || !p.is("^") {
-		return base, err
+// nested reads an expression one level further in, within the limit.
+func (p *parser) nested(least level) (int, error) {
+	if p.depth == maxDepth {
+		return 0, p.unexpected(fmt.Sprintf("want at most %d levels of nesting", maxDepth))
 	}
-	p.advance()
-	exponent, err := p.deeper(p.signed)
-	if err != nil {
-		return 0, err
+	p.depth++
+	i, err := p.expression(least)
+	p.depth--
+	return i, err
+}
+
+// choices reads a : b after a question mark.
+func (p *parser) choices(n *node) (err error) {
+	if n.args[1], err = p.nested(anything); err != nil {
+		return err
 	}
-	return p.node(operation("^"), base, exponent)
+	if err = p.expect(":"); err != nil {
+		return err
+	}
+	n.args[2], err = p.nested(anything)
+	return err
+}
+
+// operand reads signs and what they stand before. A sign binds less tightly than ^.
+func (p *parser) operand() (int, error) {
+	if !p.is("-") && !p.is("+") {
+		return p.atom()
+	}
+	minus := 0
+	for ; p.is("-") || p.is("+"); p.advance() {
+		if p.is("-") {
+			minus++
+		}
+	}
+	i, err := p.expression(raising)
+	for ; err == nil && minus > 0; minus-- {
+		i, err = p.node(node{op: negation, args: [3]int{i}})
+	}
+	return i, err
 }
 
 // atom reads a number, a name, a call or a parenthesis.
@@ -190,13 +179,13 @@ func (p *parser) atom() (int, error) {
 			return 0, p.unexpected("want a number within the range of double precision")
 		}
 		p.advance()
-		return p.graph.constant(v), nil
+		return p.node(node{op: kindConstant, bits: math.Float64bits(v)})
 	case t.kind == 'a':
 		p.advance()
-		return p.name(t)
+		return p.named(t)
 	case p.is("("):
 		p.advance()
-		inner, err := p.deeper(p.ternary)
+		inner, err := p.nested(anything)
 		if err != nil {
 			return 0, err
 		}
@@ -205,48 +194,35 @@ func (p *parser) atom() (int, error) {
 	return 0, p.unexpected("want a number, x, a function or a parenthesis")
 }
 
-// name reads what follows a name: nothing for x and constants, arguments for a
+// named reads what follows a name: nothing for x and constants, arguments for a
 // function.
-func (p *parser) name(t token) (int, error) {
-	switch t.text {
-	case "x":
-		return p.graph.x(), nil
-	case "pi":
-		return p.graph.constant(math.Pi), nil
-	case "e":
-		return p.graph.constant(math.E), nil
+func (p *parser) named(t token) (int, error) {
+	if t.text == "x" {
+		return p.node(node{op: kindX})
+	}
+	for _, c := range constants {
+		if t.text == c.name {
+			return p.node(node{op: kindConstant, bits: math.Float64bits(c.value), name: c.name})
+		}
 	}
 	op := operation(t.text)
-	if op < 0 || operations[op].infix {
+	if op < 0 || operations[op].form == written {
 		return 0, unknownName(t)
 	}
-	if err := p.expect("("); err != nil {
-		return 0, err
-	}
-	var args []int
-	for i := range operations[op].Args {
-		if i > 0 {
-			if err := p.expect(","); err != nil {
-				return 0, err
-			}
-		}
-		a, err := p.deeper(p.ternary)
-		if err != nil {
+	n := node{op: op}
+	separator := "("
+	for k := range operations[op].Args {
+		if err := p.expect(separator); err != nil {
 			return 0, err
 		}
-		args = append(args, a)
+		separator = ","
+		var err error
+		if n.args[k], err = p.nested(anything); err != nil {
+			return 0, err
+		}
 	}
 	if err := p.expect(")"); err != nil {
 		return 0, err
 	}
-	return p.node(op, args...)
-}
-
-// unknownName makes the error for a name that means nothing.
-func unknownName(t token) error {
-	known := []string{"x", "pi", "e"}
-	for _, f := range Functions() {
-		known = append(known, f.Name)
-	}
-	return &SyntaxError{At: t.at, Found: t.String(), Want: "known: " + strings.Join(known, ", "), Near: Nearest(t.text, known)}
+	return p.node(n)
 }

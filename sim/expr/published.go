@@ -31,14 +31,31 @@ func bumps(x float64) float64 {
 }
 
 // heavisine is 4 sin 4πx − sgn(x − 0.3) − sgn(0.72 − x).
-func heavisine(x float64) float64 {
-	return 4*math.Sin(4*math.Pi*x) - sign(x-0.3) - sign(0.72-x)
+func heavisine(dst, a, _, _ []float64) {
+	var angle [block]float64
+	for i, x := range a {
+		angle[i] = 4 * math.Pi * x
+	}
+	sine(angle[:len(a)], angle[:len(a)], nil, nil)
+	dst = dst[:len(a)]
+	for i, x := range a {
+		dst[i] = 4*angle[i] - sign(x-0.3) - sign(0.72-x)
+	}
 }
 
 // doppler is √(x(1−x)) sin(2π·1.05/(x + 0.05)), and 0 outside [0, 1].
-func doppler(x float64) float64 {
-	if x <= 0 || x >= 1 {
-		return 0
+func doppler(dst, a, _, _ []float64) {
+	var angle [block]float64
+	for i, x := range a {
+		angle[i] = 2 * math.Pi * 1.05 / (x + 0.05)
 	}
-	return math.Sqrt(x*(1-x)) * math.Sin(2*math.Pi*1.05/(x+0.05))
+	sine(angle[:len(a)], angle[:len(a)], nil, nil)
+	dst = dst[:len(a)]
+	for i, x := range a {
+		if x > 0 && x < 1 {
+			dst[i] = math.Sqrt(x*(1-x)) * angle[i]
+		} else {
+			dst[i] = 0
+		}
+	}
 }
