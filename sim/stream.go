@@ -4,6 +4,7 @@ import (
 	"crypto/sha256"
 	"encoding/binary"
 
+	//lint:ignore SA1019 its PCG source is the one whose 128 bits of state can be set whole
 	"golang.org/x/exp/rand"
 )
 

@@ -3,6 +3,7 @@ package main
 import (
 	"fmt"
 	"io"
+	"strings"
 
 	"github.com/jedib0t/go-pretty/v6/table"
 	"github.com/jedib0t/go-pretty/v6/text"
@@ -83,7 +84,7 @@ func printCell(w io.Writer, cell results.Cell, rows []results.Summary) {
 			percent(l.figures["regret_over_2"].Value), failures(l),
 		})
 	}
-	fmt.Fprintln(w, t.Render())
+	fmt.Fprintln(w, render(t))
 }
 
 // failures writes how many replicates a method had no pick in, and why.
@@ -113,6 +114,15 @@ func plainStyle() table.Style {
 	s.Options = table.Options{SeparateHeader: true}
 	s.Format.Header = text.FormatDefault
 	return s
+}
+
+// render writes a table without blanks at the ends of its lines.
+func render(t table.Writer) string {
+	lines := strings.Split(t.Render(), "\n")
+	for i, line := range lines {
+		lines[i] = strings.TrimRight(line, " ")
+	}
+	return strings.Join(lines, "\n")
 }
 
 // rightFrom aligns columns first … last to the right, heads included.

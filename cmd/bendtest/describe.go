@@ -110,14 +110,14 @@ func describeTable(w io.Writer, args []string) error {
 	for _, c := range doc.Columns {
 		t.AppendRow(table.Row{c.Column, c.Type, c.Unit, c.Description})
 	}
-	fmt.Fprintln(w, t.Render())
+	fmt.Fprintln(w, render(t))
 	if doc.Name == results.Summaries.Name {
 		fmt.Fprintln(w, "\nmeasures:")
 		m := newTable("measure", "meaning")
 		for _, measure := range scoring.Measures() {
 			m.AppendRow(table.Row{measure.Name, measure.Doc})
 		}
-		fmt.Fprintln(w, m.Render())
+		fmt.Fprintln(w, render(m))
 	}
 	return nil
 }
@@ -205,7 +205,7 @@ func printTruths(w io.Writer) {
 		}
 		t.AppendRow(table.Row{f.Name + args, f.Doc})
 	}
-	fmt.Fprintln(w, t.Render())
+	fmt.Fprintln(w, render(t))
 	fmt.Fprint(w, `
 A bare name such as f = "doppler" stands for doppler(x). In place of f, knots = {x = […], y = […]} gives the natural
 cubic spline through points.

@@ -104,26 +104,33 @@ func familyOptionNames() []string {
 	return names
 }
 
-// addFamilyFlags adds a flag per option, telling which families have it.
+// addFamilyFlags adds a flag per option, telling which families have it and what it
+// takes.
 func addFamilyFlags(f *pflag.FlagSet) {
 	for _, name := range familyOptionNames() {
-		var uses []string
-		boolean := false
+		var families []string
+		var option scenarios.Option
 		for _, family := range smoothers.Families() {
 			for _, o := range scenarios.OptionsOf(family.New()) {
-				if o.Name != name {
-					continue
+				if o.Name == name {
+					families = append(families, family.Name)
+					option = o
 				}
-				boolean = o.Type == "true or false"
-				words := ""
-				if len(o.Allowed) > 0 {
-					words = " (" + strings.Join(o.Allowed, ", ") + ")"
-				}
-				uses = append(uses, family.Name+": "+o.Doc+words)
 			}
 		}
-		f.String(name, "", "`VALUE` for "+strings.Join(uses, "; "))
-		if boolean {
+		takes := option.Range
+		if len(option.Allowed) > 0 {
+			takes = strings.Join(option.Allowed, " or ")
+		}
+		usage := "`VALUE`"
+		if takes != "" {
+			usage += ", " + takes + ","
+		}
+		if len(families) == len(smoothers.Families()) {
+			families = []string{"every family"}
+		}
+		f.String(name, "", usage+" for "+strings.Join(families, ", "))
+		if option.Type == "true or false" {
 			f.Lookup(name).NoOptDefVal = "true"
 		}
 	}

@@ -49,7 +49,7 @@ func fitsTable(w io.Writer, sheet *scoring.Sheet, found []fitResult) error {
 				short(c.AICc), short(c.BIC), short(r.DFResidual), status,
 			})
 		}
-		if _, err := fmt.Fprintf(w, "%s, %s observations\n\n%s\n\n", f.label, thousands(len(sheet.X)), t.Render()); err != nil {
+		if _, err := fmt.Fprintf(w, "%s, %s observations\n\n%s\n\n", f.label, thousands(len(sheet.X)), render(t)); err != nil {
 			return err
 		}
 	}

@@ -60,10 +60,13 @@ func printPlan(w io.Writer, plan *sweep.Plan, e sweep.Estimate, workers int) {
 			duration(c.Seconds), fmt.Sprintf("%.0f %%", 100*c.FailShare),
 		})
 	}
-	fmt.Fprintln(w, t.Render())
+	fmt.Fprintln(w, render(t))
 	fmt.Fprintf(w, "\n%s cells × %s replicates × %s rungs = %s fits, in %s units, picked from by %d rules\n",
 		thousands(len(s.Cells)), thousands(s.Replicates), thousands(plan.FitsPerReplicate()), thousands(e.Fits),
 		thousands(len(plan.Units)), len(s.Rules))
+	if s.Precision != nil {
+		fmt.Fprintln(w, precisionWords)
+	}
 	fmt.Fprintf(w, "about %s on %d workers, about %s of disk\n",
 		duration(e.Seconds/float64(workers)), workers, size(e.Bytes))
 }

@@ -82,6 +82,9 @@ func runJob(ctx context.Context, job sweep.Job, quiet bool, stdout, stderr io.Wr
 		defer p.End()
 		watch = p
 	}
+	if job.Study.Precision != nil {
+		fmt.Fprintln(stderr, precisionWords)
+	}
 	outcome, err := job.Run(ctx, watch)
 	var foreign *results.ForeignDirError
 	var locked *results.LockedError
@@ -98,6 +101,9 @@ func runJob(ctx context.Context, job sweep.Job, quiet bool, stdout, stderr io.Wr
 	}
 	return printOutcome(stdout, job.Dir)
 }
+
+// precisionWords says how a precision target is met.
+const precisionWords = "every cell runs its at-most replicates; the summary's mcse says what precision that reached"
 
 // silent observes nothing.
 type silent struct{}
