@@ -59,6 +59,15 @@ type solver interface {
 	solve(y []float64, f *Fit)
 }
 
+// SolveBy sets how a y is fitted on the rung, for families outside this package: solve
+// must fill f.Fitted, which has length n already, set f.Curve, and leave y alone.
+func (r *Rung) SolveBy(solve func(y []float64, f *Fit)) { r.solver = solveFunc(solve) }
+
+// A solveFunc is a solver that is a function.
+type solveFunc func(y []float64, f *Fit)
+
+func (s solveFunc) solve(y []float64, f *Fit) { s(y, f) }
+
 // Fit smooths y (length n, in the order of the design) and leaves the result in
 // f, whose memory is reused: in steady state it allocates nothing. Fit panics if
 // the rung's status is not OK or the length is wrong.
