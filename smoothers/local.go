@@ -162,6 +162,7 @@ const (
 	noteFew    = "fewer distinct x than a local fit needs"
 	noteEqual  = "all x are equal"
 	noteTooFew = "df below what the widest window gives"
+	noteStep   = "tr S steps over this df between adjacent widths"
 	noteTooBig = "df above what any window gives"
 )
 

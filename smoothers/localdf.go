@@ -142,12 +142,9 @@ func (g *gaze) growth(tuning float64) float64 {
 	return g.spread / g.h * tuning * float64(len(g.l.x))
 }
 
-// dfTight is the relative precision to which tr S is driven: well inside the promised
-// dfSlack, so that the trace summed from leverages keeps the promise too.
-const (
-	dfTight = 1e-10
-	dfSlack = 1e-8
-)
+// dfTight is the relative precision to which tr S is driven: well inside dfTolerance,
+// so that the trace summed from leverages keeps that too.
+const dfTight = 1e-10
 
 // tune finds the widest tuning with tr S = df, or says why there is none.
 func (l *localLadder) tune(df float64) (float64, Status, string) {
@@ -159,9 +156,9 @@ func (l *localLadder) tune(df float64) (float64, Status, string) {
 		return 0, EmptyWindow, noteFew
 	case high < low:
 		return 0, RankDeficient, noteFew
-	case df < low*(1-dfSlack):
+	case df < low*(1-dfTolerance):
 		return 0, DFUnattainable, noteTooFew
-	case df > high*(1+dfSlack):
+	case df > high*(1+dfTolerance):
 		return 0, DFUnattainable, noteTooBig
 	}
 	if l.extent() == 0 { // the mean, at any bandwidth, unless
@@ -177,14 +174,14 @@ func (l *localLadder) tune(df float64) (float64, Status, string) {
 			continue
 		case i > 0:
 			return l.root(df, i), OK, ""
-		case off <= dfSlack*df:
+		case off <= dfTolerance*df:
 			return g.width[i], OK, ""
 		}
 		return 0, DFUnattainable, noteTooFew
 	}
 	last := len(g.width) - 1
 	switch {
-	case last >= 0 && math.Abs(g.trace[last]-df) <= dfSlack*df:
+	case last >= 0 && math.Abs(g.trace[last]-df) <= dfTolerance*df:
 		return g.width[last], OK, ""
 	case l.shape.compact():
 		return 0, EmptyWindow, noteNarrow

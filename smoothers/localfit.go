@@ -128,14 +128,12 @@ func (f *localFit) weigh(g *gaze, t float64, self int) {
 	}
 	f.far = 0
 	if f.l.shape.compact() {
-		if g.beyond {
-			for i, z := range z {
-				a[i] = g.slack(z, t) * inv
+		for i, z := range z {
+			s := (g.h - math.Abs(z-t)) * inv
+			if s < slackTight {
+				s = g.slack(z, t) * inv
 			}
-		} else {
-			for i, z := range z {
-				a[i] = (g.h - math.Abs(z-t)) * inv
-			}
+			a[i] = s
 		}
 		f.l.shape.weigh(w, a)
 	} else {

@@ -30,6 +30,9 @@ func (l *localLadder) AtDF(dfs []float64) []Rung {
 		if r.Tuning, r.Status, r.Note = l.tune(df); r.Status == OK {
 			l.lay(r, &solvers[i])
 		}
+		if r.Status == OK && math.Abs(r.TrS-df) > dfTolerance*df {
+			*r = Rung{DF: df, Status: DFUnattainable, Note: noteStep}
+		}
 	}
 	return rungs
 }

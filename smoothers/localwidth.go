@@ -16,10 +16,8 @@ type gaze struct {
 	first  int     // the k nearest observations are x[first:first+k]
 	spread float64 // dh/dq: from the k-th nearest to the next
 
-	// Beyond the data the width with neighbours is |t − rim|, where rim does not
-	// depend on t; h − |z_i − t| = |z_i − rim| is then taken without cancellation.
-	beyond bool
-	rim    float64
+	// With neighbours h = |kth − t| + extra, where kth is the k-th nearest observation.
+	kth, extra float64
 }
 
 // gaze returns a gaze at the left of everything.
@@ -39,7 +37,7 @@ func (l *localLadder) gaze(tuning float64) gaze {
 
 // at moves the gaze to t. Its cost is the distance moved, in x passed.
 func (g *gaze) at(t float64) {
-	g.h, g.beyond = g.width, false
+	g.h = g.width
 	if g.k > 0 {
 		g.neighbours(t)
 	}
@@ -82,18 +80,47 @@ func (g *gaze) at(t float64) {
 }
 
 // sees says whether a kernel of compact support gives z weight.
-func (g *gaze) sees(z, t float64) bool { return g.slack(z, t) > 0 }
-
-// slack returns h − |z − t|.
-func (g *gaze) slack(z, t float64) float64 {
-	switch {
-	case !g.beyond:
-		return g.h - math.Abs(z-t)
-	case g.rim < t:
-		return z - g.rim
-	default:
-		return g.rim - z
+func (g *gaze) sees(z, t float64) bool {
+	s := g.h - math.Abs(z-t)
+	if math.Abs(s) < slackTight*g.h {
+		s = g.slack(z, t)
 	}
+	return s > 0
+}
+
+// slackTight is how near to the rim of the window, in widths, h − |z − t| must be
+// worked out exactly: a weight there may decide the fit, however small it is.
+const slackTight = 1e-4
+
+// slack returns h − |z − t|, not as a rounded h less a rounded distance.
+func (g *gaze) slack(z, t float64) float64 {
+	if g.k > 0 {
+		return farther(g.kth, z, t) + g.extra
+	}
+	d := math.Abs(z - t)
+	if z < t {
+		z, t = t, z
+	}
+	back := d - z // d is z − t but for an error that these four operations find (Knuth)
+	return g.h - d - ((z - (d - back)) - (t + back))
+}
+
+// farther returns |a − t| − |b − t|, rounded once or twice.
+func farther(a, b, t float64) float64 {
+	switch {
+	case a >= t && b >= t:
+		return a - b
+	case a < t && b < t:
+		return b - a
+	}
+	s := a + b
+	back := s - a
+	rest := (a - (s - back)) + (b - back) // s + rest is a + b
+	v := (s - 2*t) + rest
+	if a < t {
+		return -v
+	}
+	return v
 }
 
 // neighbours sets the width at t to the distance of the q-th nearest observation,
@@ -101,38 +128,28 @@ func (g *gaze) slack(z, t float64) float64 {
 func (g *gaze) neighbours(t float64) {
 	x, k := g.l.x, g.k
 	n := len(x)
-	g.spread = 0
 	for g.first+k < n && x[g.first+k]-t < t-x[g.first] {
 		g.first++
 	}
 	for g.first > 0 && t-x[g.first-1] < x[g.first+k-1]-t {
 		g.first--
 	}
-	switch {
-	case t > x[n-1]:
-		g.beyond, g.rim = true, x[n-k]
-		if k < n {
-			g.rim += g.theta * (x[n-k-1] - x[n-k])
-		}
-		g.h = t - g.rim
-	case t < x[0]:
-		g.beyond, g.rim = true, x[k-1]
-		if k < n {
-			g.rim += g.theta * (x[k] - x[k-1])
-		}
-		g.h = g.rim - t
-	default:
-		g.h = max(t-x[g.first], x[g.first+k-1]-t)
-		next := math.Inf(1)
-		if g.first > 0 {
-			next = t - x[g.first-1]
-		}
-		if g.first+k < n {
-			next = min(next, x[g.first+k]-t)
-		}
-		if k < n {
-			g.spread = next - g.h
-			g.h += g.theta * g.spread
-		}
+	left, right := g.first, g.first+k-1
+	g.kth = x[left]
+	if x[right]-t > t-x[left] {
+		g.kth = x[right]
 	}
+	g.spread = 0
+	if k < n {
+		next := math.Inf(1)
+		if left > 0 {
+			next = farther(x[left-1], g.kth, t)
+		}
+		if right+1 < n {
+			next = min(next, farther(x[right+1], g.kth, t))
+		}
+		g.spread = max(next, 0)
+	}
+	g.extra = g.theta * g.spread
+	g.h = math.Abs(g.kth-t) + g.extra
 }
