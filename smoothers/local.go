@@ -107,7 +107,6 @@ func layLocal(x []float64, mem *Arena, l localLadder) *localLadder {
 	l.floor = l.leastWidth()
 	lad := &l
 	lad.fit = lad.fitOn(mem.floats(lad.scratch()))
-	lad.grid.init(mem)
 	return lad
 }
 

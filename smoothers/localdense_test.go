@@ -44,7 +44,7 @@ func denseWidth(x []float64, t, q float64) float64 {
 }
 
 // denseRow is the row of weights with which the fit at t takes y, or nil where too
-// few distinct x have weight for QR in double precision.
+// few distinct x have weights for QR without row exchanges to be a reference.
 func denseRow(s Smoother, x []float64, tuning, t float64) []float64 {
 	kernel, degree, h := "", 0, tuning
 	switch s := s.(type) {
@@ -72,7 +72,7 @@ func denseRow(s Smoother, x []float64, tuning, t float64) []float64 {
 	}
 	seen := map[float64]bool{}
 	for i, v := range x {
-		if root[i] > 1e-15 {
+		if root[i] > 1e-7 {
 			seen[v] = true
 		}
 	}

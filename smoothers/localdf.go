@@ -3,81 +3,57 @@ package smoothers
 import "math"
 
 // A traceGrid holds tr S and its derivative by the log of the width at widths of
-// falling size. The widths depend on the design alone, so the rung found for one df
-// does not depend on what other df were asked for.
+// falling size, as far as they have been asked for. The widths depend on the design
+// alone, so that the rung for one df does not depend on what other df were asked for.
 //
-// tr S need not fall as the width grows, for degree 1 and 2 on uneven designs. The
-// smoothest root is sought: in the first cell from the wide end at whose narrow
-// end tr S has reached df. Cells inside which tr S turns round are split, so that
-// a root between two turning points is not stepped over.
+// tr S falls as the width grows, for every degree and design: K(d/h) grows with h,
+// so the matrix M = Σ K(d/h) p pᵀ of the local problem, p the powers of x − t, grows
+// in the order of positive definite matrices, its inverse falls, and S_ii = K(0) e₀ᵀM⁻¹e₀
+// with it. So there is one width per df, if any.
 type traceGrid struct {
 	width, trace, slope []float64
-	next                int  // number of the next step of the plain grid
-	done                bool // the narrow end is reached
+	known               []float64 // 1 where the others are filled in
 }
-
-// gridRoom is the number of nodes that need no allocation.
-const gridRoom = 96
-
-func (g *traceGrid) init(mem *Arena) {
-	g.width = mem.floats(gridRoom)[:0]
-	g.trace = mem.floats(gridRoom)[:0]
-	g.slope = mem.floats(gridRoom)[:0]
-}
-
-// wideSteps are the first bandwidths of the grid, in octaves of the data range. At
-// 2^17 ranges tr S exceeds degree + 1 by no more than rounding and 1e-10.
-var wideSteps = [...]float64{17, 12, 8, 5, 3}
 
 const (
 	stepsPerOctave = 4
-	splits         = 8 // parts of a cell in which tr S turns round
+	// widestOctaves is the first bandwidth of the grid, in octaves of the data range:
+	// tr S exceeds degree + 1 by no more than rounding and 1e−10 there.
+	widestOctaves = 17
 )
 
-// extend adds the next node, or several where a cell is split. It reports false
-// when there are no more.
-func (l *localLadder) extend() bool {
+// layGrid makes room for the grid, from the widest width to the narrowest.
+func (l *localLadder) layGrid() {
+	octaves := 0.0
+	if narrow := l.narrowest(); narrow > 0 {
+		octaves = max(0, math.Log2(l.widest()/narrow))
+	}
+	n := int(octaves*stepsPerOctave) + 2
 	g := &l.grid
-	if g.done {
-		return false
+	g.width, g.trace = l.mem.floats(n), l.mem.floats(n)
+	g.slope, g.known = l.mem.floats(n), l.mem.floats(n)
+	for i := range n - 1 {
+		g.width[i] = l.widest() * math.Exp2(-float64(i)/stepsPerOctave)
 	}
-	w := l.step(g.next)
-	g.next++
-	last := len(g.width) - 1
-	if !(w > l.narrowest()) {
-		w, g.done = l.narrowest(), true
-		if last >= 0 && !(w < g.width[last]) {
-			return false
-		}
-	}
-	tr, slope := l.trace(w)
-	if last >= 0 && slope*g.slope[last] < 0 {
-		ratio := math.Pow(w/g.width[last], 1.0/splits)
-		v := g.width[last]
-		for range splits - 1 {
-			v *= ratio
-			t, s := l.trace(v)
-			g.push(v, t, s)
-		}
-	}
-	g.push(w, tr, slope)
-	return true
+	g.width[n-1] = l.narrowest()
 }
 
-func (g *traceGrid) push(w, tr, slope float64) {
-	g.width = append(g.width, w)
-	g.trace = append(g.trace, tr)
-	g.slope = append(g.slope, slope)
+// node returns tr S at node i of the grid.
+func (l *localLadder) node(i int) float64 {
+	g := &l.grid
+	if g.known[i] == 0 {
+		g.trace[i], g.slope[i] = l.trace(g.width[i])
+		g.known[i] = 1
+	}
+	return g.trace[i]
 }
 
-// step returns width number i of the plain grid.
-func (l *localLadder) step(i int) float64 {
+// widest returns the tuning at which the grid begins.
+func (l *localLadder) widest() float64 {
 	if l.neighbours {
-		return math.Exp2(-float64(i) / stepsPerOctave)
+		return 1
 	}
-	octaves := wideSteps[min(i, len(wideSteps)-1)]
-	octaves -= float64(max(0, i-len(wideSteps)+1)) / stepsPerOctave
-	return l.extent() * math.Exp2(octaves)
+	return l.extent() * (1 << widestOctaves)
 }
 
 // narrowest returns the tuning at which the grid ends: just above the floor, or
@@ -85,7 +61,7 @@ func (l *localLadder) step(i int) float64 {
 func (l *localLadder) narrowest() float64 {
 	const above = 1 + 1e-9
 	if l.neighbours {
-		return l.floor * above / float64(len(l.x))
+		return min(l.floor*above/float64(len(l.x)), 1)
 	}
 	if l.shape.compact() {
 		return l.floor * above
@@ -99,26 +75,21 @@ func (l *localLadder) narrowest() float64 {
 
 // trace returns tr S at a tuning and its derivative by the log of the tuning.
 func (l *localLadder) trace(tuning float64) (tr, slope float64) {
-	if l.wide(tuning) {
-		s := l.sumsOn(tuning, nil)
-		for i, t := range l.z {
-			var lev, d float64
-			if s.at(t, true) {
-				lev, d = s.leverage()
-			} else {
-				lev, d = l.fit.leverage(&s.gaze, t)
-			}
-			tr += l.count[i] * lev
-			slope += l.count[i] * d * s.gaze.growth(tuning)
-		}
-		return tr, slope
-	}
-	g := l.gaze(tuning)
+	wide := l.wide(tuning)
+	s := l.sumsOn(tuning, nil)
 	for i, t := range l.z {
-		g.at(t)
-		lev, d := l.fit.leverage(&g, t)
+		var lev, d float64
+		switch {
+		case wide && s.at(t, true):
+			lev, d = s.leverage()
+		case wide:
+			lev, d = l.fit.leverage(&s.gaze, t)
+		default:
+			s.gaze.at(t)
+			lev, d = l.fit.leverage(&s.gaze, t)
+		}
 		tr += l.count[i] * lev
-		slope += l.count[i] * d * g.growth(tuning)
+		slope += l.count[i] * d * s.gaze.growth(tuning)
 	}
 	return tr, slope
 }
@@ -142,11 +113,7 @@ func (g *gaze) growth(tuning float64) float64 {
 	return g.spread / g.h * tuning * float64(len(g.l.x))
 }
 
-// dfTight is the relative precision to which tr S is driven: well inside dfTolerance,
-// so that the trace summed from leverages keeps that too.
-const dfTight = 1e-10
-
-// tune finds the widest tuning with tr S = df, or says why there is none.
+// tune finds the tuning with tr S = df, or says why there is none.
 func (l *localLadder) tune(df float64) (float64, Status, string) {
 	low, high := float64(l.degree+1), float64(len(l.z))
 	switch {
@@ -160,28 +127,25 @@ func (l *localLadder) tune(df float64) (float64, Status, string) {
 		return 0, DFUnattainable, noteTooFew
 	case df > high*(1+dfTolerance):
 		return 0, DFUnattainable, noteTooBig
-	}
-	if l.extent() == 0 { // the mean, at any bandwidth, unless
-		return 0, DFUnattainable, noteFew
+	case l.extent() == 0: // tr S is 1 whatever the bandwidth: no df to solve for
+		return 0, DFUnattainable, noteEqual
+	case math.IsInf(l.floor, 1) || l.neighbours && l.floor >= float64(len(l.x)):
+		return 0, EmptyWindow, noteNarrow
 	}
 	g := &l.grid
-	for i := 0; i < len(g.width) || l.extend(); i++ {
-		off := g.trace[i] - df
-		switch {
-		case math.Abs(off) <= dfTight*df:
-			return g.width[i], OK, ""
-		case off < 0:
-			continue
-		case i > 0:
-			return l.root(df, i), OK, ""
-		case off <= dfTolerance*df:
-			return g.width[i], OK, ""
-		}
-		return 0, DFUnattainable, noteTooFew
+	if g.width == nil {
+		l.layGrid()
 	}
 	last := len(g.width) - 1
+	i := l.bracket(df)
 	switch {
-	case last >= 0 && math.Abs(g.trace[last]-df) <= dfTolerance*df:
+	case i == 0 && math.Abs(l.node(0)-df) <= dfTolerance*df:
+		return g.width[0], OK, ""
+	case i == 0:
+		return 0, DFUnattainable, noteTooFew
+	case i <= last:
+		return l.root(df, i), OK, ""
+	case math.Abs(l.node(last)-df) <= dfTolerance*df:
 		return g.width[last], OK, ""
 	case l.shape.compact():
 		return 0, EmptyWindow, noteNarrow
@@ -189,29 +153,57 @@ func (l *localLadder) tune(df float64) (float64, Status, string) {
 	return 0, DFUnattainable, noteTooBig
 }
 
-// A node is tr S seen from one width: v is log width, f a transform of tr S − df
-// that is nearly linear in v both where tr S is near its least and near its
-// greatest value, and df its derivative by v.
-type node struct{ v, f, df float64 }
+// bracket returns the first node of the grid with tr S ≥ df, or the number of nodes. It
+// starts where tr S is about range/h, or 2/fraction, and strides away from there.
+func (l *localLadder) bracket(df float64) int {
+	n := len(l.grid.width)
+	start := stepsPerOctave * math.Log2(df/2)
+	if !l.neighbours {
+		start = stepsPerOctave * (math.Log2(df) + widestOctaves)
+	}
+	lo, hi := -1, n // tr S < df at lo, ≥ df at hi
+	for i, stride := max(0, min(int(start), n-1)), 1; lo+1 < hi; stride *= 2 {
+		if l.node(i) >= df {
+			hi = i
+			i -= stride
+		} else {
+			lo = i
+			i += stride
+		}
+		if i <= lo || i >= hi {
+			i = (lo + hi) / 2
+		}
+	}
+	return hi
+}
+
+// An end of a bracket is tr S seen from one width: v is log width, f a transform of
+// tr S − df that is nearly linear in v both where tr S is near its least and near
+// its greatest value, and df its derivative by v.
+type end struct{ v, f, df float64 }
+
+// dfTight is the relative precision to which tr S is driven: well inside dfTolerance,
+// so that the trace summed from leverages keeps that too.
+const dfTight = 1e-10
 
 // root solves tr S = df in the cell between grid nodes i − 1 and i, by cubic Hermite
 // interpolation of the bracket's two ends, falling back to halving it.
 func (l *localLadder) root(df float64, i int) float64 {
 	g := &l.grid
 	low, high := float64(l.degree+1), float64(len(l.z))
-	if !(low < min(g.trace[i-1], df)) {
+	if !(low < min(l.node(i-1), df)) {
 		low = 0
 	}
-	if !(high > max(g.trace[i], df)) {
+	if !(high > max(l.node(i), df)) {
 		high = math.Inf(1)
 	}
-	view := func(width, tr, slope float64) node {
-		n := node{v: math.Log(width), f: math.Log((tr - low) / (df - low)), df: slope / (tr - low)}
+	view := func(width, tr, slope float64) end {
+		e := end{v: math.Log(width), f: math.Log((tr - low) / (df - low)), df: slope / (tr - low)}
 		if !math.IsInf(high, 1) {
-			n.f -= math.Log((high - tr) / (high - df))
-			n.df += slope / (high - tr)
+			e.f -= math.Log((high - tr) / (high - df))
+			e.df += slope / (high - tr)
 		}
-		return n
+		return e
 	}
 	a := view(g.width[i-1], g.trace[i-1], g.slope[i-1]) // wide, f < 0
 	b := view(g.width[i], g.trace[i], g.slope[i])       // narrow, f ≥ 0
@@ -237,7 +229,7 @@ func (l *localLadder) root(df float64, i int) float64 {
 
 // hermiteRoot returns the root between a and b of the cubic through both ends with
 // their slopes, to the precision that the next evaluation can use.
-func hermiteRoot(a, b node) float64 {
+func hermiteRoot(a, b end) float64 {
 	h := b.v - a.v
 	lo, hi := 0.0, 1.0 // cubic < 0 at lo, ≥ 0 at hi
 	s := a.f / (a.f - b.f)

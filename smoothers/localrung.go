@@ -176,6 +176,9 @@ func (l *localLadder) layout(tuning float64) panelLayout {
 		b.l, b.basis, b.fit, b.scale = l, l.basis(), &l.fit, 1
 		b.diff = l.mem.floats(m)
 		b.weight = l.mem.floats(nodesKept)[:0]
+		b.lo, b.end = l.mem.floats(nodesKept / 16)[:0], l.mem.floats(nodesKept / 16)[:0]
+		b.stretch, b.ends = l.mem.floats(2 * kinksMost)[:0], l.mem.floats(4 * kinksMost)[:0]
+		b.edge.weight, b.next.weight = l.mem.floats(m)[:0], l.mem.floats(m)[:0]
 		b.room = nodesKept
 	}
 	if !b.make(tuning) {
