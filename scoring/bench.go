@@ -96,11 +96,10 @@ func (b *Bench) Replicate(replicate int) {
 // Score appends the rows of a sample that is replicate of the cell.
 func (b *Bench) Score(replicate int, sample *sim.Sample) {
 	train := &sample.Train
-	n := len(train.X)
-	b.held.Set(&sample.Held, train.X[0], train.X[n-1])
+	b.held.Set(&sample.Held, train.X)
 	b.trainer.set(train.X, train.Y, b.cell.NoiseVariance)
 	for _, f := range b.folders {
-		f.deal(n, b.cell.Stream(b.seed, replicate, f.purpose()))
+		f.deal(len(train.X), b.cell.Stream(b.seed, replicate, f.purpose()))
 	}
 	b.layLadders(train.X)
 	for i := range b.contest.Entrants {

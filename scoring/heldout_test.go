@@ -76,18 +76,26 @@ func pointwise(s *sim.Set, c smoothers.Curve, lo, hi float64) HeldOutScore {
 func TestScoringByMomentsEqualsSummingThePoints(t *testing.T) {
 	rng := rand.New(rand.NewPCG(3, 1))
 	for _, c := range []struct {
-		pieces, order, points int
-		lo, hi, shift         float64
+		pieces, order, points, training int
+		lo, hi, shift                   float64
 	}{
-		{1, 4, 10000, 0, 1, 0}, {29, 4, 10000, 0, 1, 0}, {12, 4, 10000, 1e4, 1e4 + 1, 1e6},
-		{5, 2, 1000, -3e8, 5e8, 0}, {300, 4, 10000, 0, 1e-6, 5}, {7, 1, 100, 0, 1, 0}, {3000, 4, 10000, 0, 1, 0},
+		{1, 4, 10000, 30, 0, 1, 0}, {29, 4, 10000, 30, 0, 1, 0}, {12, 4, 10000, 30, 1e4, 1e4 + 1, 1e6},
+		{5, 2, 1000, 100, -3e8, 5e8, 0}, {300, 4, 10000, 300, 0, 1e-6, 5}, {7, 1, 100, 10, 0, 1, 0},
+		{3000, 4, 10000, 3000, 0, 1, 0}, {8, 4, 10000, 2, 0, 1, 0},
 	} {
-		t.Run(fmt.Sprintf("pieces=%d/order=%d/points=%d/shift=%g", c.pieces, c.order, c.points, c.shift), func(t *testing.T) {
+		t.Run(fmt.Sprintf("pieces=%d/order=%d/points=%d/training=%d/shift=%g", c.pieces, c.order, c.points, c.training, c.shift), func(t *testing.T) {
 			s := heldSet(rng, c.points, c.lo, c.hi, c.shift)
 			curve := splines(rng, s, c.pieces, c.order)
 			lo, hi := s.X[c.points/20], s.X[c.points-c.points/10]
 			var h HeldOut
-			h.Set(s, lo, hi)
+			train := []float64{lo}
+			for _, v := range s.X {
+				if lo < v && v < hi && rng.IntN(c.points) < c.training {
+					train = append(train, v)
+				}
+			}
+			train = append(train, hi)
+			h.Set(s, train)
 			got, finite := h.Score(curve)
 			want := pointwise(s, curve, lo, hi)
 			if !finite {
@@ -122,12 +130,12 @@ func TestInsideAndOutsideSplitTheSet(t *testing.T) {
 		inside, outside bool
 	}{
 		{"all inside", -1, 2, true, false},
-		{"all outside", 0.4, 0.4 - 1e-12, false, true},
+		{"all outside", 3, 4, false, true},
 		{"both", s.X[10], s.X[490], true, true},
 		{"only above", -1, s.X[490], true, true},
 	} {
 		var h HeldOut
-		h.Set(s, c.lo, c.hi)
+		h.Set(s, []float64{c.lo, c.hi})
 		for _, curve := range []smoothers.Curve{curve, plain{curve}} {
 			got, _ := h.Score(curve)
 			want := pointwise(s, curve, c.lo, c.hi)
@@ -144,7 +152,7 @@ func TestInsideAndOutsideSplitTheSet(t *testing.T) {
 func TestTheTruthScoresTheNoiseItself(t *testing.T) {
 	s := heldSet(rand.New(rand.NewPCG(9, 1)), 2000, 0, 1, 0)
 	var h HeldOut
-	h.Set(s, 0.1, 0.9)
+	h.Set(s, []float64{0.1, 0.9})
 	got, _ := h.Score(truth{s})
 	if got.ASE != 0 || !near(got.MSE, h.Noise(), 1e-15) {
 		t.Errorf("the truth scores %+v, noise %v", got, h.Noise())
@@ -159,7 +167,7 @@ func (c truth) At(dst, t []float64) { copy(dst, c.set.F) }
 func TestACurveThatLeavesTheNumbersIsNotFinite(t *testing.T) {
 	s := heldSet(rand.New(rand.NewPCG(9, 1)), 200, 0, 1, 0)
 	var h HeldOut
-	h.Set(s, 0.1, 0.9)
+	h.Set(s, []float64{0.1, 0.9})
 	for _, v := range []float64{math.NaN(), math.Inf(1), 1e200} {
 		p := &smoothers.Piecewise{Order: 1, Break: []float64{0, 1}, Origin: []float64{0}, Width: []float64{1}, Coef: []float64{v}}
 		if _, finite := h.Score(p); finite {
@@ -172,9 +180,10 @@ func TestScoringDoesNotAllocate(t *testing.T) {
 	rng := rand.New(rand.NewPCG(3, 1))
 	s := heldSet(rng, 10000, 0, 1, 0)
 	curve := splines(rng, s, 20, 4)
+	train := []float64{0.01, 0.3, 0.5, 0.99}
 	var h HeldOut
 	if n := testing.AllocsPerRun(5, func() {
-		h.Set(s, 0.01, 0.99)
+		h.Set(s, train)
 		h.Score(curve)
 		h.Score(plain{curve})
 	}); n > 1 { // wrapping the curve
@@ -185,25 +194,33 @@ func TestScoringDoesNotAllocate(t *testing.T) {
 func BenchmarkHeldOut(b *testing.B) {
 	rng := rand.New(rand.NewPCG(3, 1))
 	s := heldSet(rng, 10000, 0, 1, 0)
-	var h HeldOut
-	b.Run("set", func(b *testing.B) {
-		b.ReportAllocs()
-		for b.Loop() {
-			h.Set(s, 0.01, 0.99)
+	for _, n := range []int{30, 300, 3000} {
+		train := make([]float64, n)
+		for i := range train {
+			train[i] = rng.Float64()
 		}
-	})
-	for _, pieces := range []int{5, 30, 300, 3000} {
-		curve := splines(rng, s, pieces, 4)
-		b.Run(fmt.Sprintf("score/pieces=%d", pieces), func(b *testing.B) {
+		slices.Sort(train)
+		var h HeldOut
+		b.Run(fmt.Sprintf("set/n=%d", n), func(b *testing.B) {
 			b.ReportAllocs()
 			for b.Loop() {
-				h.Score(curve)
+				h.Set(s, train)
 			}
 		})
-		b.Run(fmt.Sprintf("pointwise/pieces=%d", pieces), func(b *testing.B) {
-			for b.Loop() {
-				h.Score(plain{curve})
-			}
-		})
+		at := splines(rng, s, n-1, 4)
+		copy(at.Break, train)
+		for name, curve := range map[string]*smoothers.Piecewise{"breaks=training-x": at, "breaks=8": splines(rng, s, 9, 4)} {
+			b.Run(fmt.Sprintf("score/n=%d/%s", n, name), func(b *testing.B) {
+				b.ReportAllocs()
+				for b.Loop() {
+					h.Score(curve)
+				}
+			})
+			b.Run(fmt.Sprintf("pointwise/n=%d/%s", n, name), func(b *testing.B) {
+				for b.Loop() {
+					h.Score(plain{curve})
+				}
+			})
+		}
 	}
 }
