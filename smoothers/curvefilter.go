@@ -6,200 +6,206 @@ import "math"
 // Wiener process g with a flat prior on (g, g′) (Wahba 1978, JRSSB 40:364; Wecker &
 // Ansley 1983, JASA 78:81), worked in information form from both ends.
 //
-// What is known of the state (g, g′) at a knot from one side is the matrix Λ = [a b;
-// b c]. Over a gap h the state moves by F = [1 h; 0 1] and noise of covariance
-// Q = q[h³/3 h²/2; h²/2 h], so that
+// What is known of the state (g, g′) at a knot from one side is the matrix
+// Λ = [a −b; −b c]. Over a gap h the state moves by F = [1 h; 0 1] and noise of
+// covariance Q = q[h³/3 h²/2; h²/2 h], so that
 //
 //	Λ ← F⁻ᵀ (Λ⁻¹ + F⁻¹QF⁻ᵀ)⁻¹ F⁻¹.
 //
-// Starting from Λ = 0 both ways, and measuring the derivative outwards, b ≤ 0 holds
-// throughout, and with det Λ carried along as a fourth number every formula below
-// adds terms of one sign: no digits cancel, however close or far apart knots lie.
-// Nothing is divided by h. The banded forms of the spline divide by h² and fail on
-// near ties.
+// Starting from Λ = 0 both ways, and measuring the derivative outwards, b ≥ 0 holds
+// throughout, and with d = det Λ carried along as a fourth number every formula below
+// only adds: no digits cancel, however close or far apart knots lie, and nothing is
+// divided by h. The banded forms of the spline divide by h² and fail on near ties.
 type curveFilter struct {
 	design *tied
 	gap    []float64
-	ahead  []float64 // eight values per knot: what lies below it, and its changes
 }
 
-// info is Λ and its determinant.
-type info struct{ a, b, c, det float64 }
+// filterRoom is what a curveFilter keeps per knot.
+const filterRoom = 8
+
+// info is Λ = [a −b; −b c] and its determinant d.
+type info struct{ a, b, c, d float64 }
 
 // observe adds w observations of g.
 func (s info) observe(w float64) info {
-	s.a += w
-	s.det += w * s.c
-	return s
+	return info{s.a + w, s.b, s.c, s.d + w*s.c}
 }
 
-// cross returns q times the quadratic form of step's factor.
-func (s info) cross(q, h float64) float64 {
-	return q * (s.a*h*h*h/3 - s.b*h*h + s.c*h)
+// observeChange is the derivative by log λ of observe, given that of s.
+func (s info) observeChange(w float64) info {
+	return info{s.a, s.b, s.c, s.d + w*s.c}
 }
 
 // step moves over a gap; factor is det(I + F⁻¹QF⁻ᵀ Λ).
 func (s info) step(q, h float64) (next info, factor float64) {
-	dq := s.det * q * h
-	factor = 1 + s.cross(q, h) + dq*q*h*h*h/12
+	e := q * h
+	de := s.d * e
+	factor = 1 + e*(s.c+h*(s.b+h*(s.a/3+de/12)))
+	r := 1 / factor
 	return info{
-		(s.a + dq) / factor,
-		(s.b - h*s.a - dq*h/2) / factor,
-		(s.c - 2*h*s.b + h*h*s.a + dq*h*h/3) / factor,
-		s.det / factor,
+		(s.a + de) * r,
+		(s.b + h*(s.a+de/2)) * r,
+		(s.c + h*(2*s.b+h*(s.a+de/3))) * r,
+		s.d * r,
 	}, factor
 }
 
-// stepChange is the derivative of step by log λ, given that of s, with what step
-// returned.
-func (s info) stepChange(ds info, q, h float64, next info, factor float64) info {
-	dq := s.det * q * h
-	ddq := ds.det*q*h - dq // dq/dlog λ = −q
-	dfactor := ds.cross(q, h) - s.cross(q, h) + (ddq-dq)*q*h*h*h/12
-	return info{
-		(ds.a + ddq - next.a*dfactor) / factor,
-		(ds.b - h*ds.a - ddq*h/2 - next.b*dfactor) / factor,
-		(ds.c - 2*h*ds.b + h*h*ds.a + ddq*h*h/3 - next.c*dfactor) / factor,
-		(ds.det - next.det*dfactor) / factor,
+// stepChange is step together with its derivative by log λ, given that of s.
+func (s info) stepChange(ds info, q, h float64) (next, change info) {
+	e := q * h // its derivative by log λ is −e
+	de := s.d * e
+	dde := ds.d*e - de
+	u := s.c + h*(s.b+h*(s.a/3+de/12))
+	du := ds.c + h*(ds.b+h*(ds.a/3+dde/12))
+	r := 1 / (1 + e*u)
+	next = info{
+		(s.a + de) * r,
+		(s.b + h*(s.a+de/2)) * r,
+		(s.c + h*(2*s.b+h*(s.a+de/3))) * r,
+		s.d * r,
+	}
+	f := e * (du - u) // the derivative of 1 + eu
+	return next, info{
+		(ds.a + dde - next.a*f) * r,
+		(ds.b + h*(ds.a+dde/2) - next.b*f) * r,
+		(ds.c + h*(2*ds.b+h*(ds.a+dde/3)) - next.c*f) * r,
+		(ds.d - next.d*f) * r,
 	}
 }
 
-// join returns det(A + B) for what is known from below and from above, whose
-// derivatives point opposite ways.
-func join(lower, upper info) float64 {
-	return lower.det + upper.det + lower.a*upper.c + upper.a*lower.c + 2*lower.b*upper.b
+// spread implements splineFilter. It goes up and down at the same time, which lets the
+// processor overlap the two; they meet in the middle, and from there on each finds
+// what the other has left behind.
+func (f *curveFilter) spread(q float64, value, change, rest, scratch []float64) {
+	count, gap := f.design.count, f.gap
+	var up, dup, down, ddown info
+	for i, j := 0, len(count)-1; j >= 0; i, j = i+1, j-1 {
+		there, here := (*[8]float64)(scratch[8*j:]), (*[8]float64)(scratch[8*i:])
+		switch {
+		case i < j:
+			*here = [8]float64{up.a, up.b, up.c, up.d, dup.a, dup.b, dup.c, dup.d}
+			*there = [8]float64{down.a, down.b, down.c, down.d, ddown.a, ddown.b, ddown.c, ddown.d}
+		case i > j:
+			t, dt := info{there[0], there[1], there[2], there[3]}, info{there[4], there[5], there[6], there[7]}
+			value[j], change[j], rest[j] = down.posterior(t, ddown, dt, count[j])
+			t, dt = info{here[0], here[1], here[2], here[3]}, info{here[4], here[5], here[6], here[7]}
+			value[i], change[i], rest[i] = up.posterior(t, dup, dt, count[i])
+		default:
+			value[i], change[i], rest[i] = up.posterior(down, dup, ddown, count[i])
+		}
+		if j > 0 {
+			up, dup = up.observe(count[i]).stepChange(dup.observeChange(count[i]), q, gap[i])
+			down, ddown = down.observe(count[j]).stepChange(ddown.observeChange(count[j]), q, gap[j-1])
+		}
+	}
 }
 
-// joinChange is the derivative of join.
-func joinChange(lower, upper, dlower, dupper info) float64 {
-	return dlower.det + dupper.det +
-		dlower.a*upper.c + lower.a*dupper.c + dupper.a*lower.c + upper.a*dlower.c +
-		2*(dlower.b*upper.b+lower.b*dupper.b)
+// posterior returns the variance of g at a knot with w observations, from what is
+// known from both sides and its derivatives by log λ; its own derivative; and 1 − w times
+// the variance.
+func (s info) posterior(t, ds, dt info, w float64) (value, change, rest float64) {
+	without := s.d + t.d + s.a*t.c + t.a*s.c + 2*s.b*t.b // det of the sum of both
+	dwithout := ds.d + dt.d + ds.a*t.c + s.a*dt.c + dt.a*s.c + t.a*ds.c + 2*(ds.b*t.b+s.b*dt.b)
+	c, dc := s.c+t.c, ds.c+dt.c
+	r := 1 / (without + w*c)
+	value = c * r
+	return value, (dc - value*(dwithout+w*dc)) * r, without * r
 }
 
-// spread implements splineFilter.
-func (f *curveFilter) spread(q float64, value, change, rest []float64) {
-	count := f.design.count
+// gainRoom is what gains keep per knot: the matrix that moves an information vector over
+// the gap above, the one for the gap below, and the covariances C, B, A of all that is
+// known there, Λ⁻¹ = [C B; B A].
+const gainRoom = 11
+
+// room implements splineFilter.
+func (f *curveFilter) room() int { return gainRoom * len(f.design.count) }
+
+// gains implements splineFilter. I − S is the projected inverse of M = I + Σ/λ, Σ the
+// covariance of the process, X its flat part: the product of its non-zero eigenvalues is
+// det XᵀX / (det M det XᵀM⁻¹X) (Wahba 1985, Ann. Stat. 13:1378), and integrating the
+// states out one after the other gives det M det XᵀM⁻¹X as the product of the factors of
+// the steps and the last determinant.
+func (f *curveFilter) gains(q float64, g []float64) (logDet float64) {
+	count, gap := f.design.count, f.gap
 	m := len(count)
-	var s, ds info
-	for i, w := range count {
-		copy(f.ahead[8*i:8*i+8], []float64{s.a, s.b, s.c, s.det, ds.a, ds.b, ds.c, ds.det})
-		if i < m-1 {
-			s, ds = s.observe(w), ds.observeChange(w)
-			next, factor := s.step(q, f.gap[i])
-			ds = s.stepChange(ds, q, f.gap[i], next, factor)
-			s = next
-		}
-	}
-	s, ds = info{}, info{}
-	for i := m - 1; i >= 0; i-- {
-		w, p := count[i], f.ahead[8*i:8*i+8]
-		lower, dlower := info{p[0], p[1], p[2], p[3]}, info{p[4], p[5], p[6], p[7]}
-		without := join(lower, s)
-		c, dc := lower.c+s.c, dlower.c+ds.c
-		det := without + w*c
-		value[i] = c / det
-		rest[i] = without / det
-		change[i] = (dc - value[i]*(joinChange(lower, s, dlower, ds)+w*dc)) / det
-		if i > 0 {
-			s, ds = s.observe(w), ds.observeChange(w)
-			next, factor := s.step(q, f.gap[i-1])
-			ds = s.stepChange(ds, q, f.gap[i-1], next, factor)
-			s = next
-		}
-	}
-}
-
-// observeChange is the derivative of observe: the observations do not depend on λ.
-func (s info) observeChange(w float64) info {
-	s.det += w * s.c
-	return s
-}
-
-// logDet implements splineFilter. I − S is the projected inverse of M = I + Σ/λ, Σ
-// the covariance of the process, X its flat part: the product of its non-zero
-// eigenvalues is det XᵀX / (det M det XᵀM⁻¹X) (Wahba 1985, Ann. Stat. 13:1378), and
-// integrating the states out one after the other gives det M det XᵀM⁻¹X as the
-// product of the step factors and the last determinant.
-func (f *curveFilter) logDet(q float64) (float64, bool) {
 	var s, flat info
-	sum := 0.0
-	for i, w := range f.design.count {
-		s, flat = s.observe(w), flat.observe(w)
-		if i < len(f.gap) {
-			next, factor := s.step(q, f.gap[i])
-			s = next
-			flat, _ = flat.step(0, f.gap[i])
-			sum += math.Log(factor)
-		}
-	}
-	return math.Log(flat.det) - sum - math.Log(s.det), true
-}
-
-// curveGains holds, per knot, what smoothing readings takes. Going up, the
-// information vector z is moved over the gap above a knot by up[4i:], going down by
-// down[4i:] over the gap below it; final holds C/det, B/det and A/det of all that is
-// known at a knot.
-type curveGains struct {
-	up, down, final []float64
-}
-
-// gains implements splineFilter.
-func (f *curveFilter) gains(q float64, mem *Arena) splineGains {
-	count := f.design.count
-	m := len(count)
-	g := &curveGains{up: mem.floats(4 * m), down: mem.floats(4 * m), final: mem.floats(3 * m)}
-	var s info
+	factors := product{1, 0}
 	for i, w := range count {
-		copy(g.final[3*i:], []float64{s.a, s.b, s.c})
-		f.ahead[8*i] = s.det
+		p := (*[gainRoom]float64)(g[gainRoom*i:])
+		p[8], p[9], p[10], p[7] = s.a, s.b, s.c, s.d
+		s, flat = s.observe(w), flat.observe(w)
 		if i < m-1 {
-			s = s.observe(w)
-			s = s.move(q, f.gap[i], g.up[4*i:4*i+4])
+			var factor float64
+			s, factor = s.move(q, gap[i], (*[4]float64)(p[0:4]))
+			flat = flat.shift(gap[i])
+			factors.times(factor)
 		}
 	}
+	logDet = math.Log(flat.d/s.d) - factors.log()
 	s = info{}
 	for i := m - 1; i >= 0; i-- {
-		w, p := count[i], g.final[3*i:3*i+3]
-		lower := info{p[0], p[1], p[2], f.ahead[8*i]}
-		det := join(lower, s) + w*(lower.c+s.c)
-		p[0], p[1], p[2] = (lower.c+s.c)/det, (lower.b-s.b)/det, (lower.a+s.a+w)/det
+		w, p := count[i], (*[gainRoom]float64)(g[gainRoom*i:])
+		t := info{p[8], p[9], p[10], p[7]}
+		r := 1 / (s.d + t.d + (s.a+w)*t.c + (t.a+w)*s.c + 2*s.b*t.b)
+		p[8], p[9], p[10] = (s.c+t.c)*r, (t.b-s.b)*r, (s.a+t.a+w)*r
 		if i > 0 {
-			s = s.observe(w)
-			s = s.move(q, f.gap[i-1], g.down[4*i:4*i+4])
+			s, _ = s.observe(w).move(q, gap[i-1], (*[4]float64)(p[4:8]))
 		}
 	}
-	return g
+	return logDet
 }
 
-// move is step, with the matrix that moves z: F⁻ᵀ(I + Λ F⁻¹QF⁻ᵀ)⁻¹, row by row.
-func (s info) move(q, h float64, t []float64) info {
+// shift is step without noise.
+func (s info) shift(h float64) info {
+	return info{s.a, s.b + h*s.a, s.c + h*(2*s.b+h*s.a), s.d}
+}
+
+// move is step, with the matrix F⁻ᵀ(I + Λ F⁻¹QF⁻ᵀ)⁻¹ that moves an information vector, by
+// rows. Only its last entry has terms of both signs: it passes zero.
+func (s info) move(q, h float64, t *[4]float64) (info, float64) {
 	next, factor := s.step(q, h)
-	t11 := (1 + q*h*(s.c-s.b*h/2)) / factor
-	t12 := q * h * (s.a*h/2 - s.b) / factor
-	t21 := q * h * h * (s.c/2 - s.b*h/3) / factor
-	t22 := (1 + q*h*h*(s.a*h/3-s.b/2)) / factor
-	t[0], t[1], t[2], t[3] = t11, t12, t21-h*t11, t22-h*t12
-	return next
+	r := 1 / factor
+	e := q * h
+	t[0] = (1 + e*(s.c+h*s.b/2)) * r
+	t[1] = e * (s.b + h*s.a/2) * r
+	t[2] = -h * (1 + e*(s.c/2+h*s.b/6)) * r
+	t[3] = (1 - e*h*(s.b/2+h*s.a/6)) * r
+	return next, factor
 }
 
-// smooth implements splineGains.
-func (g *curveGains) smooth(r, value, slope, work []float64) {
+// smooth implements splineFilter.
+func (f *curveFilter) smooth(g, sums, value, slope, work []float64) {
 	var z1, z2 float64
-	for i, v := range r {
+	for i, v := range sums {
 		work[2*i], work[2*i+1] = z1, z2
 		z1 += v
-		t := g.up[4*i : 4*i+4]
+		t := (*[gainRoom]float64)(g[gainRoom*i:])
 		z1, z2 = t[0]*z1+t[1]*z2, t[2]*z1+t[3]*z2
 	}
 	z1, z2 = 0, 0
-	for i := len(r) - 1; i >= 0; i-- {
-		p := g.final[3*i : 3*i+3]
-		one, two := work[2*i]+z1+r[i], work[2*i+1]-z2
-		value[i] = p[0]*one - p[1]*two
-		slope[i] = p[2]*two - p[1]*one
-		z1 += r[i]
-		t := g.down[4*i : 4*i+4]
-		z1, z2 = t[0]*z1+t[1]*z2, t[2]*z1+t[3]*z2
+	for i := len(sums) - 1; i >= 0; i-- {
+		p := (*[gainRoom]float64)(g[gainRoom*i:])
+		z1 += sums[i]
+		one, two := work[2*i]+z1, work[2*i+1]-z2
+		value[i] = p[8]*one + p[9]*two
+		slope[i] = p[10]*two + p[9]*one
+		z1, z2 = p[4]*z1+p[5]*z2, p[6]*z1+p[7]*z2
 	}
 }
+
+// A product of many factors ≥ 1, kept from overflow.
+type product struct {
+	value float64
+	logs  float64 // of what was taken out of value
+}
+
+func (p *product) times(factor float64) {
+	p.value *= factor
+	if p.value > 1e100 { // a factor is below 1e200, see leastLogLambda
+		p.logs += math.Log(p.value)
+		p.value = 1
+	}
+}
+
+func (p *product) log() float64 { return p.logs + math.Log(p.value) }

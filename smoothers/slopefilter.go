@@ -6,82 +6,83 @@ package smoothers
 type slopeFilter struct {
 	design *tied
 	gap    []float64
-	ahead  []float64 // two values per knot: what lies below it, and its change
 }
 
 // spread implements splineFilter.
-func (f *slopeFilter) spread(q float64, value, change, rest []float64) {
-	count := f.design.count
+func (f *slopeFilter) spread(q float64, value, change, rest, scratch []float64) {
+	count, gap := f.design.count, f.gap
 	m := len(count)
 	var a, da float64
 	for i, w := range count {
-		f.ahead[2*i], f.ahead[2*i+1] = a, da
+		scratch[2*i], scratch[2*i+1] = a, da
 		if i < m-1 {
-			a, da = fade(a+w, da, q*f.gap[i])
+			a, da = fade(a+w, da, q*gap[i])
 		}
 	}
 	a, da = 0, 0
 	for i := m - 1; i >= 0; i-- {
 		w := count[i]
-		known := f.ahead[2*i] + a
-		value[i] = 1 / (known + w)
-		rest[i] = known * value[i]
-		change[i] = -(f.ahead[2*i+1] + da) * value[i] * value[i]
+		known := scratch[2*i] + a
+		v := 1 / (known + w)
+		value[i] = v
+		rest[i] = known * v
+		change[i] = -(scratch[2*i+1] + da) * v * v
 		if i > 0 {
-			a, da = fade(a+w, da, q*f.gap[i-1])
+			a, da = fade(a+w, da, q*gap[i-1])
 		}
 	}
 }
 
 // fade moves a over a gap with p = qh, and its derivative by log λ.
 func fade(a, da, p float64) (float64, float64) {
-	factor := 1 + p*a
-	return a / factor, (da + p*a*a) / (factor * factor)
+	r := 1 / (1 + p*a)
+	return a * r, (da + p*a*a) * r * r
 }
 
-// logDet implements splineFilter: the form is defined about the straight line, which
-// this spline does not leave alone.
-func (f *slopeFilter) logDet(float64) (float64, bool) { return 0, false }
+// slopeRoom is what gains keep per knot: the factor over the gap above it, the one over
+// the gap below, and the variance of g there.
+const slopeRoom = 3
 
-// slopeGains holds per knot the factor over the gap above it, below it, and the
-// posterior variance.
-type slopeGains struct{ up, down, final []float64 }
+// room implements splineFilter.
+func (f *slopeFilter) room() int { return slopeRoom * len(f.design.count) }
 
-// gains implements splineFilter.
-func (f *slopeFilter) gains(q float64, mem *Arena) splineGains {
-	count := f.design.count
+// gains implements splineFilter. The determinant is of no use: the mixed-model form is
+// one about the straight line, which this spline doesn't leave alone.
+func (f *slopeFilter) gains(q float64, g []float64) (logDet float64) {
+	count, gap := f.design.count, f.gap
 	m := len(count)
-	g := &slopeGains{up: mem.floats(m), down: mem.floats(m), final: mem.floats(m)}
 	a := 0.0
 	for i, w := range count {
-		g.final[i] = a
+		p := (*[slopeRoom]float64)(g[slopeRoom*i:])
+		p[2] = a
 		if i < m-1 {
-			g.up[i] = 1 / (1 + q*f.gap[i]*(a+w))
-			a = (a + w) * g.up[i]
+			p[0] = 1 / (1 + q*gap[i]*(a+w))
+			a = (a + w) * p[0]
 		}
 	}
 	a = 0
 	for i := m - 1; i >= 0; i-- {
-		w := count[i]
-		g.final[i] = 1 / (g.final[i] + a + w)
+		w, p := count[i], (*[slopeRoom]float64)(g[slopeRoom*i:])
+		p[2] = 1 / (p[2] + a + w)
 		if i > 0 {
-			g.down[i] = 1 / (1 + q*f.gap[i-1]*(a+w))
-			a = (a + w) * g.down[i]
+			p[1] = 1 / (1 + q*gap[i-1]*(a+w))
+			a = (a + w) * p[1]
 		}
 	}
-	return g
+	return 0
 }
 
-// smooth implements splineGains.
-func (g *slopeGains) smooth(r, value, slope, work []float64) {
+// smooth implements splineFilter.
+func (f *slopeFilter) smooth(g, sums, value, slope, work []float64) {
 	z := 0.0
-	for i, v := range r {
+	for i, v := range sums {
 		work[i] = z
-		z = (z + v) * g.up[i]
+		z = (z + v) * g[slopeRoom*i]
 	}
 	z = 0
-	for i := len(r) - 1; i >= 0; i-- {
-		value[i], slope[i] = (work[i]+z+r[i])*g.final[i], 0
-		z = (z + r[i]) * g.down[i]
+	for i := len(sums) - 1; i >= 0; i-- {
+		p := (*[slopeRoom]float64)(g[slopeRoom*i:])
+		value[i], slope[i] = (work[i]+z+sums[i])*p[2], 0
+		z = (z + sums[i]) * p[1]
 	}
 }

@@ -3,23 +3,29 @@ package smoothers
 // A splineSolver fits one rung of a smoothing spline.
 type splineSolver struct {
 	ladder *splineLadder
-	gains  splineGains
+	q      float64   // 1/λ, in units of the range of x
+	gains  []float64 // of the filter; nil where too large to keep
 }
 
 // solve implements solver. What the penalty leaves alone, a line or for order 1 a
 // constant, is fitted first and put back at the end, which keeps the digits of
 // readings far from 0.
 func (s *splineSolver) solve(y []float64, f *Fit) {
-	l := s.ladder
+	l, gains := s.ladder, s.gains
 	m := len(l.design.z)
 	f.work = resize(f.work, 5*m)
+	if gains == nil {
+		f.work = resize(f.work, 5*m+l.filter.room())
+		gains = f.work[5*m:]
+		l.filter.gains(s.q, gains)
+	}
 	r, g, slope := f.work[:m], f.work[m:2*m], f.work[2*m:3*m]
 	l.design.sums(r, y)
 	line := l.line(r)
 	for i, count := range l.design.count {
 		r[i] -= count * line.at(l.position(i))
 	}
-	s.gains.smooth(r, g, slope, f.work[3*m:])
+	l.filter.smooth(gains, r, g, slope, f.work[3*m:5*m])
 	for i := range g {
 		g[i] += line.at(l.position(i))
 		slope[i] += line.slope
