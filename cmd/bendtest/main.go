@@ -12,6 +12,8 @@ import (
 	"os/signal"
 	"runtime/debug"
 	"syscall"
+
+	"bendtest/cmd/bendtest/sweep"
 )
 
 // Exit codes; they are part of the interface.
@@ -39,10 +41,7 @@ func run(ctx context.Context, args []string, stdout, stderr io.Writer) (code int
 	defer func() {
 		if r := recover(); r != nil {
 			code = exitFault
-			fmt.Fprintf(stderr, "bendtest: a fault of the program itself: %v (set %s=1 for details)\n", r, detailsVariable)
-			if os.Getenv(detailsVariable) != "" {
-				stderr.Write(debug.Stack())
-			}
+			printFault(stderr, fmt.Sprintf("a fault of the program itself: %v", r), debug.Stack())
 		}
 	}()
 	root := newRoot(stdout, stderr)
@@ -52,6 +51,7 @@ func run(ctx context.Context, args []string, stdout, stderr io.Writer) (code int
 		return exitDone
 	}
 	var bad *requestError
+	var fault *sweep.PanicError
 	switch {
 	case errors.Is(err, errStopped):
 		fmt.Fprintf(stderr, "bendtest: %v\n", err)
@@ -59,7 +59,19 @@ func run(ctx context.Context, args []string, stdout, stderr io.Writer) (code int
 	case errors.As(err, &bad):
 		bad.print(stderr)
 		return exitRequest
+	case errors.As(err, &fault):
+		printFault(stderr, fault.Error(), fault.Stack)
+		return exitFault
 	}
 	fmt.Fprintf(stderr, "bendtest: %v\n", err)
 	return exitFault
+}
+
+// printFault reports a panic in one line, with its stack if that is asked for.
+func printFault(w io.Writer, what string, stack []byte) {
+	if os.Getenv(detailsVariable) == "" {
+		fmt.Fprintf(w, "bendtest: %s (set %s=1 for details)\n", what, detailsVariable)
+		return
+	}
+	fmt.Fprintf(w, "bendtest: %s\n%s", what, stack)
 }
