@@ -134,7 +134,7 @@ func newTable(head ...any) table.Writer {
 func printKind(w io.Writer, name, doc string, options any) {
 	fmt.Fprintf(w, "%s: %s\n", name, doc)
 	for _, o := range scenarios.OptionsOf(options) {
-		fmt.Fprintf(w, "    %-14s %s\n", o.Name, optionText(o))
+		fmt.Fprintf(w, "    %-16s %s\n", o.Name, optionText(o))
 	}
 }
 
