@@ -200,3 +200,48 @@ func TestPolynomialHoldsBeyondTheData(t *testing.T) {
 		}
 	}
 }
+
+func BenchmarkPolynomial(b *testing.B) {
+	dfs := []float64{2, 3, 4, 5, 6, 7, 8, 9, 10, 11, 12, 13, 14, 15, 16}
+	for _, n := range []int{30, 300, 3000} {
+		x, y := evenReadings(n)
+		b.Run(fmt.Sprintf("rungs/n=%d", n), func(b *testing.B) {
+			var mem Arena
+			b.ReportAllocs()
+			for b.Loop() {
+				mem.Reset()
+				NewPolynomial().On(x, &mem).AtDF(dfs)
+			}
+			b.ReportMetric(float64(b.Elapsed().Nanoseconds())/float64(b.N*len(dfs)), "ns/rung")
+		})
+		b.Run(fmt.Sprintf("fit/n=%d", n), func(b *testing.B) {
+			r := NewPolynomial().On(x, nil).AtDF([]float64{8})
+			var f Fit
+			b.ReportAllocs()
+			for b.Loop() {
+				r[0].Fit(y, &f)
+			}
+		})
+	}
+	x, y := evenReadings(30)
+	r := NewPolynomial().On(x, nil).AtDF([]float64{16})
+	var f Fit
+	r[0].Fit(y, &f)
+	t, _ := evenReadings(10000)
+	v := make([]float64, len(t))
+	b.Run("curve/df=16/m=10000", func(b *testing.B) {
+		for b.Loop() {
+			f.Curve.At(v, t)
+		}
+	})
+}
+
+// evenReadings returns n even x in [0, 1] and some readings.
+func evenReadings(n int) (x, y []float64) {
+	x, y = make([]float64, n), make([]float64, n)
+	for i := range x {
+		x[i] = (float64(i) + 0.5) / float64(n)
+		y[i] = math.Sin(6*x[i]) + math.Cos(float64(i*i))
+	}
+	return x, y
+}
