@@ -31,7 +31,7 @@ func Families() []Family {
 		},
 		{
 			Name: "local", Doc: "local polynomial regression of degree 1 or 2",
-			Tuning: "bandwidth in units of x, or fraction of the observations", LowestDF: 2,
+			Tuning: "bandwidth in units of x, or fraction of the observations", LowestDF: 3,
 			New: func() Smoother { return NewLocal() },
 		},
 		{

@@ -82,7 +82,7 @@ func (l *localLadder) lay(r *Rung, s *localRung) {
 	*s = localRung{l: l, tuning: r.Tuning}
 	r.solver = s
 	r.Leverage, r.RowNorm2, r.Remainder = l.mem.floats(n), l.mem.floats(n), l.mem.floats(n)
-	if l.window(r.Tuning)*float64(len(l.z)) > rowsKept {
+	if l.wide(r.Tuning) && l.window(r.Tuning)*float64(len(l.z)) > rowsKept {
 		l.layBySums(r)
 	} else {
 		l.layByRows(r, s)

@@ -69,3 +69,27 @@ func compareSums(t *testing.T, name string, l *localLadder, tuning float64) {
 		}
 	}
 }
+
+func TestRungBySumsEqualsRungByRows(t *testing.T) {
+	x := uniformDesign(300, 1)
+	for name, s := range allLocal() {
+		rungs := s.On(x, nil).AtDF([]float64{2.5, 4, 9, 40})
+		for i := range rungs {
+			r := &rungs[i]
+			if r.Status != OK {
+				continue
+			}
+			l := s.On(x, nil).(*localLadder)
+			want := Rung{Tuning: r.Tuning, Leverage: make([]float64, 300), RowNorm2: make([]float64, 300), Remainder: make([]float64, 300)}
+			l.layByRows(&want, &localRung{})
+			for _, v := range [][2]float64{{r.TrS, want.TrS}, {r.TrSTS, want.TrSTS}, {r.DFResidual, want.DFResidual}} {
+				if math.Abs(v[0]-v[1]) > sumsTol*v[1] {
+					t.Errorf("%s, df %g: got %.15g, want %.15g", name, r.DF, v[0], v[1])
+				}
+			}
+			if d := max(apart(r.Leverage, want.Leverage, 1), apart(r.RowNorm2, want.RowNorm2, 1), apart(r.Remainder, want.Remainder, 1)); d > sumsTol {
+				t.Errorf("%s, df %g: leverages, row norms or remainders %g apart", name, r.DF, d)
+			}
+		}
+	}
+}
