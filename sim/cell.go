@@ -3,11 +3,8 @@ package sim
 import (
 	"crypto/sha256"
 	"encoding/hex"
-	"errors"
 	"fmt"
 	"math"
-
-	"bendtest/sim/expr"
 )
 
 // A Cell is one combination of truth, design, noise and sample size. It is
@@ -24,6 +21,8 @@ type Cell struct {
 	NoiseVariance float64
 	SD            float64 // standard deviation of the noise where its scale is 1
 
+	x      xLaw
+	errors errorLaw
 	fixedX []float64 // training x that need no draw, or nil
 	hash   string
 }
@@ -54,16 +53,17 @@ func NewCell(truth *Truth, design *Design, noise *Noise, n, heldOut int) (*Cell,
 		panic("sim: a cell needs positive sample sizes")
 	}
 	c := &Cell{Truth: truth, Design: design, Noise: noise, N: n, HeldOut: heldOut}
-	if err := design.check(truth.Lo, truth.Hi); err != nil {
+	var err error
+	if c.x, err = design.on(truth.Lo, truth.Hi); err == nil {
+		c.fixedX, err = design.fixed(n, truth.Lo, truth.Hi)
+	}
+	if err != nil {
 		return nil, &CellError{DesignPart, err}
 	}
-	if law, ok := design.Law.(fixedLaw); ok {
-		x, err := law.fixed(n, truth.Lo, truth.Hi)
-		if err != nil {
-			return nil, &CellError{DesignPart, err}
+	for _, x := range [][]float64{c.x.atoms(), c.fixedX} {
+		if err := truth.finiteAt(x); err != nil {
+			return nil, &CellError{TruthPart, err}
 		}
-		design.round(x, truth.Lo, truth.Hi)
-		c.fixedX = x
 	}
 	if err := c.setNoise(); err != nil {
 		return nil, &CellError{NoisePart, err}
@@ -81,63 +81,23 @@ func (c *Cell) setNoise() error {
 	if err != nil {
 		return err
 	}
-	c.SD, c.NoiseVariance, err = c.Noise.level(c.signalVariance, scale2)
+	c.NoiseVariance, c.SD, err = c.Noise.variance(scale2, c.signalVariance)
 	if err != nil {
 		return err
 	}
 	if !(c.NoiseVariance > 0) || math.IsInf(c.NoiseVariance, 0) {
-		return errors.New("the noise variance is not a positive finite number")
+		return fmt.Errorf("the noise variance comes out as %g; want a positive finite number", c.NoiseVariance)
 	}
+	c.errors = c.Noise.Law.errors()
 	return nil
-}
-
-// signalVariance is the variance of f over the design law.
-func (c *Cell) signalVariance() float64 {
-	lo, hi := c.Truth.Lo, c.Truth.Hi
-	var s expr.Scratch
-	mean := c.Design.mean(func(dst, x []float64) { c.Truth.Eval(dst, x, &s) }, lo, hi)
-	variance := c.Design.mean(func(dst, x []float64) {
-		c.Truth.Eval(dst, x, &s)
-		for i, f := range dst {
-			dst[i] = (f - mean) * (f - mean)
-		}
-	}, lo, hi)
-	if variance <= 1e-28*mean*mean { // a constant, to rounding
-		return 0
-	}
-	return variance
-}
-
-// meanSquareScale is E scale(X)² over the design law.
-func (c *Cell) meanSquareScale() (float64, error) {
-	scale := c.Noise.Scale
-	if scale == nil {
-		return 1, nil
-	}
-	lo, hi := c.Truth.Lo, c.Truth.Hi
-	if err := finiteOn(lo, hi, scale.Eval, "scale"); err != nil {
-		return 0, &OptionError{"scale", scale.String(), err.Error()}
-	}
-	var s expr.Scratch
-	negative := false
-	square := c.Design.mean(func(dst, x []float64) {
-		scale.Eval(dst, x, &s)
-		for i, v := range dst {
-			negative = negative || v < 0
-			dst[i] = v * v
-		}
-	}, lo, hi)
-	if negative || !(square > 0) {
-		return 0, &OptionError{"scale", scale.String(), fmt.Sprintf("an expression that is nowhere negative and not zero throughout on [%g, %g]", lo, hi)}
-	}
-	return square, nil
 }
 
 // contentHash hashes what defines a cell's data, as stated rather than as worked
 // out, so that no rounding can change it.
 func (c *Cell) contentHash() string {
-	content := fmt.Sprintf("cell 1\ntruth %s\ndesign %s\nnoise %s\nn %d\n",
-		c.Truth.describe(), c.Design.describe(), c.Noise.describe(), c.N)
+	redraw := c.Design.Redraw || c.fixedX != nil // which need no draw to be kept
+	content := fmt.Sprintf("cell 1\ntruth %s\ndesign %s redraw %v\nnoise %s\nn %d\n",
+		c.Truth.describe(), c.Design.describe(), redraw, c.Noise.describe(), c.N)
 	sum := sha256.Sum256([]byte(content))
 	return hex.EncodeToString(sum[:8])
 }

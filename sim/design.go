@@ -1,24 +1,27 @@
 package sim
 
-import (
-	"fmt"
-	"math"
-	"slices"
-)
+import "fmt"
 
-// A DesignLaw is how the x of a sample arise on a domain [lo, hi].
+// A DesignLaw is how the x of a sample arise, given by its options.
 type DesignLaw interface {
-	// Check returns an *OptionError for the first option that makes no sense.
+	// Check returns an *OptionError for the first option that makes no sense in
+	// itself or beside the others.
 	Check() error
 
-	// draw fills x with independent draws, ascending.
-	draw(x []float64, lo, hi float64, s *Stream)
-	// mean returns E g(X); g is vectorised.
-	mean(g func(dst, x []float64), lo, hi float64) float64
-	// cdf returns P(X ≤ x).
-	cdf(x, lo, hi float64) float64
+	// on returns the law on a domain; the error is an *OptionError.
+	on(lo, hi float64) (xLaw, error)
 	// describe is the law's part of a cell's content.
 	describe() string
+}
+
+// An xLaw is a law of x on its domain. Many goroutines may use it.
+type xLaw interface {
+	// draw fills x with independent draws, ascending.
+	draw(x []float64, s *Stream)
+	// mean returns E g(X), or why it cannot be worked out.
+	mean(g integrand) (float64, error)
+	// atoms are the values that x can take, ascending, or nil where x is continuous.
+	atoms() []float64
 }
 
 // A fixedLaw is a law that can give a training design without drawing.
@@ -54,94 +57,48 @@ type Design struct {
 	Resolution float64 `option:"resolution" min:"0" doc:"round x to multiples of this, which makes ties; 0 does not round"`
 }
 
-// describe is the design's part of a cell's content.
+// describe is the content of the law of x: what training and held-out x share.
 func (d *Design) describe() string {
-	return fmt.Sprintf("%s redraw %v resolution %v", d.Law.describe(), d.Redraw, d.Resolution)
+	return fmt.Sprintf("%s resolution %v", d.Law.describe(), d.Resolution)
 }
 
-// round rounds ascending x to multiples of the resolution, kept to [lo, hi].
-func (d *Design) round(x []float64, lo, hi float64) {
-	if d.Resolution == 0 {
-		return
-	}
-	for i, v := range x {
-		x[i] = d.rounded(v, lo, hi)
-	}
-}
-
-// rounded is the multiple of the resolution nearest to v, kept to [lo, hi].
-func (d *Design) rounded(v, lo, hi float64) float64 {
-	return min(max(math.Round(v/d.Resolution)*d.Resolution, lo), hi)
-}
-
-// maxLattice bounds the number of values that a rounded x can take.
-const maxLattice = 1_000_000
-
-// mean returns E g(X) for x as they come out, rounding included.
-func (d *Design) mean(g func(dst, x []float64), lo, hi float64) float64 {
-	file, listed := d.Law.(*FileDesign)
-	switch {
-	case listed:
-		x := slices.Clone(file.Values)
-		d.round(x, lo, hi)
-		return average(g, x)
-	case d.Resolution == 0:
-		return d.Law.mean(g, lo, hi)
-	}
-	first, last := math.Round(lo/d.Resolution), math.Round(hi/d.Resolution)
-	var x, p []float64
-	below := 0.0
-	for k := first; k <= last; k++ {
-		up := 1.0
-		if k < last {
-			up = d.Law.cdf((k+0.5)*d.Resolution, lo, hi)
+// on returns the law of x on a domain, rounding included.
+func (d *Design) on(lo, hi float64) (xLaw, error) {
+	for _, options := range []any{d, d.Law} {
+		if err := checkBounds(options); err != nil {
+			return nil, err
 		}
-		x, p = append(x, min(max(k*d.Resolution, lo), hi)), append(p, up-below)
-		below = up
 	}
-	v := make([]float64, len(x))
-	g(v, x)
-	sum := 0.0
-	for i, q := range p {
-		sum += q * v[i]
-	}
-	return sum
-}
-
-// check refuses a design that makes no sense on a domain.
-func (d *Design) check(lo, hi float64) error {
 	if err := d.Law.Check(); err != nil {
-		return err
+		return nil, err
 	}
-	if on, ok := d.Law.(interface{ checkOn(lo, hi float64) error }); ok {
-		if err := on.checkOn(lo, hi); err != nil {
-			return err
-		}
+	law, err := d.Law.on(lo, hi)
+	if err != nil || d.Resolution == 0 {
+		return law, err
 	}
-	if r := d.Resolution; r < 0 || math.IsNaN(r) || r > 0 && !((hi-lo)/r < maxLattice && (hi-lo)/r > 1) {
-		return &OptionError{"resolution", fmt.Sprint(r), fmt.Sprintf("0, or between %g and %g for the domain [%g, %g]", (hi-lo)/maxLattice, hi-lo, lo, hi)}
+	l := lattice{d.Resolution, lo, hi}
+	if err := l.check(); err != nil {
+		return nil, err
 	}
-	return nil
+	switch law := law.(type) {
+	case continuousLaw:
+		return &roundedLaw{law, l}, nil
+	case *valuesLaw:
+		l.round(law.values)
+	}
+	return law, nil
 }
 
-// average returns the mean of g over x.
-func average(g func(dst, x []float64), x []float64) float64 {
-	v := make([]float64, len(x))
-	g(v, x)
-	sum := 0.0
-	for _, y := range v {
-		sum += y / float64(len(v))
+// fixed returns the training x where they are the same in every replicate without
+// being drawn, rounded, else nil.
+func (d *Design) fixed(n int, lo, hi float64) ([]float64, error) {
+	law, ok := d.Law.(fixedLaw)
+	if !ok {
+		return nil, nil
 	}
-	return sum
-}
-
-// An OptionError reports an option that makes no sense.
-type OptionError struct {
-	Option string // the option's name in the study file
-	Found  string
-	Want   string
-}
-
-func (e *OptionError) Error() string {
-	return fmt.Sprintf("%s = %s; want %s", e.Option, e.Found, e.Want)
+	x, err := law.fixed(n, lo, hi)
+	if err == nil && d.Resolution != 0 {
+		lattice{d.Resolution, lo, hi}.round(x)
+	}
+	return x, err
 }

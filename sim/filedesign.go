@@ -3,6 +3,8 @@ package sim
 import (
 	"fmt"
 	"slices"
+
+	"gonum.org/v1/gonum/floats"
 )
 
 // FileDesign draws x from a file of values, with replacement; or takes the values
@@ -20,14 +22,20 @@ func (d *FileDesign) Check() error {
 	return nil
 }
 
-// checkOn refuses values outside the domain.
-func (d *FileDesign) checkOn(lo, hi float64) error {
+func (d *FileDesign) on(lo, hi float64) (xLaw, error) {
 	for i, v := range d.Values {
 		if !(lo <= v && v <= hi) {
-			return &OptionError{"file", d.File, fmt.Sprintf("values within the domain [%g, %g] of the truth; value %d is %g", lo, hi, i+1, v)}
+			return nil, &OptionError{"file", d.File, fmt.Sprintf("values within the domain [%g, %g] of the truth; value %d is %g", lo, hi, i+1, v)}
 		}
 	}
-	return nil
+	return &valuesLaw{d.ascending()}, nil
+}
+
+// ascending returns the values in ascending order.
+func (d *FileDesign) ascending() []float64 {
+	x := slices.Clone(d.Values)
+	slices.Sort(x)
+	return x
 }
 
 func (d *FileDesign) fixed(n int, _, _ float64) ([]float64, error) {
@@ -37,32 +45,29 @@ func (d *FileDesign) fixed(n int, _, _ float64) ([]float64, error) {
 	if n != len(d.Values) {
 		return nil, &OptionError{"resample", "false", fmt.Sprintf("n = %d, the number of values in the file, not n = %d", len(d.Values), n)}
 	}
-	x := slices.Clone(d.Values)
-	slices.Sort(x)
-	return x, nil
-}
-
-func (d *FileDesign) draw(x []float64, _, _ float64, s *Stream) {
-	for i := range x {
-		x[i] = d.Values[s.intn(len(d.Values))]
-	}
-	slices.Sort(x)
-}
-
-func (d *FileDesign) mean(g func(dst, x []float64), _, _ float64) float64 {
-	return average(g, d.Values)
-}
-
-func (d *FileDesign) cdf(x, _, _ float64) float64 {
-	below := 0
-	for _, v := range d.Values {
-		if v <= x {
-			below++
-		}
-	}
-	return float64(below) / float64(len(d.Values))
+	return d.ascending(), nil
 }
 
 func (d *FileDesign) describe() string {
 	return fmt.Sprintf("from-file %s resample %v", d.digest(), d.Resample)
 }
+
+// valuesLaw draws from ascending values with replacement.
+type valuesLaw struct{ values []float64 }
+
+// draw takes the values at ascending places, so that nothing is to be sorted.
+func (l *valuesLaw) draw(x []float64, s *Stream) {
+	s.ascending(x, 0, 1)
+	n := len(l.values)
+	for i, u := range x {
+		x[i] = l.values[min(int(u*float64(n)), n-1)]
+	}
+}
+
+func (l *valuesLaw) mean(g integrand) (float64, error) {
+	v := make([]float64, len(l.values))
+	g(v, l.values)
+	return floats.Sum(v) / float64(len(v)), nil
+}
+
+func (l *valuesLaw) atoms() []float64 { return l.values }

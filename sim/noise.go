@@ -9,14 +9,18 @@ import (
 
 // A NoiseLaw is a law of errors with mean 0 and variance exactly 1.
 type NoiseLaw interface {
-	// Check returns an *OptionError for the first option that makes no sense.
+	// Check returns an *OptionError for the first option that makes no sense in
+	// itself or beside the others.
 	Check() error
 
-	// fill fills e with independent draws.
-	fill(e []float64, s *Stream)
+	// errors returns what draws from the law; many goroutines may use it.
+	errors() errorLaw
 	// describe is the law's part of a cell's content.
 	describe() string
 }
+
+// An errorLaw fills e with independent draws of mean 0 and variance 1.
+type errorLaw func(e []float64, s *Stream)
 
 // A NoiseKind is one kind of noise law.
 type NoiseKind struct {
@@ -53,61 +57,76 @@ type Noise struct {
 	AR1           float64          `option:"ar1" above:"-1" below:"1" doc:"correlation of neighbouring errors of the training sample, in x order"`
 }
 
-// Check refuses a noise whose level is not set by exactly one option.
+// levels are the options that set the level, of which a noise has one.
+func (n *Noise) levels() []level {
+	return []level{{"sd", n.SD}, {"variance", n.Variance}, {"signal-to-noise", n.SignalToNoise}, {"r2", n.R2}}
+}
+
+// A level is an option that sets the level of a noise, and its value if given.
+type level struct {
+	option string
+	value  *float64
+}
+
+// Check refuses a noise whose level is not set by exactly one option, and options
+// that make no sense.
 func (n *Noise) Check() error {
 	set := 0
-	for _, level := range []*float64{n.SD, n.Variance, n.SignalToNoise, n.R2} {
-		if level != nil {
+	for _, l := range n.levels() {
+		if l.value != nil {
 			set++
 		}
 	}
 	if set != 1 {
 		return &OptionError{"sd", fmt.Sprintf("%d levels", set), "exactly one of sd, variance, signal-to-noise, r2"}
 	}
+	for _, options := range []any{n, n.Law} {
+		if err := checkBounds(options); err != nil {
+			return err
+		}
+	}
 	return n.Law.Check()
 }
 
 // describe is the noise's part of a cell's content.
 func (n *Noise) describe() string {
-	scale, level := "1", ""
+	text := n.Law.describe()
+	for _, l := range n.levels() {
+		if l.value != nil {
+			text += fmt.Sprint(" ", l.option, " ", *l.value)
+		}
+	}
+	scale := "1"
 	if n.Scale != nil {
 		scale = n.Scale.String()
 	}
-	for _, l := range []struct {
-		name string
-		v    *float64
-	}{{"sd", n.SD}, {"variance", n.Variance}, {"signal-to-noise", n.SignalToNoise}, {"r2", n.R2}} {
-		if l.v != nil {
-			level = fmt.Sprint(l.name, " ", *l.v)
-		}
-	}
-	return fmt.Sprintf("%s %s scale %s ar1 %v", n.Law.describe(), level, scale, n.AR1)
+	return fmt.Sprintf("%s scale %s ar1 %v", text, scale, n.AR1)
 }
 
-// level returns the standard deviation where scale is 1 and the noise variance
-// averaged over the design law. signalVariance works out the variance of the truth
-// over that law, where the level needs it; scale2 is E scale(X)².
-func (n *Noise) level(signalVariance func() float64, scale2 float64) (sd, variance float64, err error) {
-	ratio := func(option string, value, signal float64) error {
-		varF := signalVariance()
-		if !(varF > 0) {
-			return &OptionError{option, fmt.Sprint(value), "sd or variance, since the truth is constant over the design"}
-		}
-		variance = varF / signal
-		sd = math.Sqrt(variance / scale2)
-		return nil
-	}
+// variance returns the noise variance averaged over the design law, and the standard
+// deviation where scale is 1, given E scale(X)². signal works out the variance of the
+// truth over the design law; it is called only where the level depends on it.
+func (n *Noise) variance(scale2 float64, signal func() (float64, error)) (variance, sd float64, err error) {
 	switch {
 	case n.SD != nil:
-		sd = *n.SD
-		variance = sd * sd * scale2
+		return *n.SD * *n.SD * scale2, *n.SD, nil
 	case n.Variance != nil:
-		sd = math.Sqrt(*n.Variance)
-		variance = *n.Variance * scale2
-	case n.SignalToNoise != nil:
-		err = ratio("signal-to-noise", *n.SignalToNoise, *n.SignalToNoise)
-	default:
-		err = ratio("r2", *n.R2, *n.R2/(1-*n.R2))
+		return *n.Variance * scale2, math.Sqrt(*n.Variance), nil
 	}
-	return sd, variance, err
+	option, value, ratio := "signal-to-noise", n.SignalToNoise, 0.0
+	if value != nil {
+		ratio = *value
+	} else {
+		option, value = "r2", n.R2
+		ratio = *value / (1 - *value)
+	}
+	of, err := signal()
+	if err != nil {
+		return 0, 0, &OptionError{option, fmt.Sprint(*value), fmt.Sprintf("sd or variance, since the truth is %v", err)}
+	}
+	if of == 0 {
+		return 0, 0, &OptionError{option, fmt.Sprint(*value), "sd or variance, since the truth is constant over the design"}
+	}
+	variance = of / ratio
+	return variance, math.Sqrt(variance / scale2), nil
 }

@@ -4,7 +4,6 @@ import (
 	"fmt"
 	"math"
 
-	"gonum.org/v1/gonum/stat"
 	"gonum.org/v1/gonum/stat/distuv"
 )
 
@@ -14,11 +13,7 @@ type NormalNoise struct{}
 // Check finds nothing wrong.
 func (*NormalNoise) Check() error { return nil }
 
-func (*NormalNoise) fill(e []float64, s *Stream) {
-	for i := range e {
-		e[i] = s.normal()
-	}
-}
+func (*NormalNoise) errors() errorLaw { return func(e []float64, s *Stream) { s.normals(e) } }
 
 func (*NormalNoise) describe() string { return "normal" }
 
@@ -30,30 +25,32 @@ type StudentNoise struct {
 // Check finds nothing that the bounds of the options leave.
 func (*StudentNoise) Check() error { return nil }
 
-// fill draws a normal over the root of a mean square of ν, the latter as a gamma.
-func (l *StudentNoise) fill(e []float64, s *Stream) {
-	square := distuv.Gamma{Alpha: l.Nu / 2, Beta: l.Nu / 2, Src: s}
-	scale := math.Sqrt((l.Nu - 2) / l.Nu)
-	for i := range e {
-		e[i] = scale * s.normal() / math.Sqrt(square.Rand())
+// errors draws a normal over the root of a mean square of ν, the latter as a gamma.
+func (l *StudentNoise) errors() errorLaw {
+	nu, scale := l.Nu, math.Sqrt((l.Nu-2)/l.Nu)
+	return func(e []float64, s *Stream) {
+		s.normals(e)
+		square := distuv.Gamma{Alpha: nu / 2, Beta: nu / 2, Src: s}
+		for i, z := range e {
+			e[i] = scale * z / math.Sqrt(square.Rand())
+		}
 	}
 }
 
 func (l *StudentNoise) describe() string { return fmt.Sprintf("student-t %v", l.Nu) }
 
-// LaplaceNoise is double exponential with scale 1/√2.
+// LaplaceNoise is double exponential with mean size 1/√2.
 type LaplaceNoise struct{}
 
 // Check finds nothing wrong.
 func (*LaplaceNoise) Check() error { return nil }
 
-func (*LaplaceNoise) fill(e []float64, s *Stream) {
-	for i := range e {
-		v := s.exponential() / math.Sqrt2
-		if s.Uint64()>>63 == 1 {
-			v = -v
+func (*LaplaceNoise) errors() errorLaw {
+	return func(e []float64, s *Stream) {
+		s.laplaces(e)
+		for i := range e {
+			e[i] *= 1 / math.Sqrt2
 		}
-		e[i] = v
 	}
 }
 
@@ -65,9 +62,13 @@ type UniformNoise struct{}
 // Check finds nothing wrong.
 func (*UniformNoise) Check() error { return nil }
 
-func (*UniformNoise) fill(e []float64, s *Stream) {
-	for i := range e {
-		e[i] = math.Sqrt(3) * (2*s.float64() - 1)
+func (*UniformNoise) errors() errorLaw {
+	half := math.Sqrt(3)
+	return func(e []float64, s *Stream) {
+		s.uniforms(e)
+		for i, u := range e {
+			e[i] = half * (2*u - 1)
+		}
 	}
 }
 
@@ -82,10 +83,13 @@ type SkewedNoise struct {
 // Check finds nothing that the bounds of the options leave.
 func (*SkewedNoise) Check() error { return nil }
 
-func (l *SkewedNoise) fill(e []float64, s *Stream) {
-	law := distuv.Gamma{Alpha: l.Shape, Beta: 1, Src: s}
-	for i := range e {
-		e[i] = (law.Rand() - l.Shape) / math.Sqrt(l.Shape)
+func (l *SkewedNoise) errors() errorLaw {
+	shape, root := l.Shape, math.Sqrt(l.Shape)
+	return func(e []float64, s *Stream) {
+		law := distuv.Gamma{Alpha: shape, Beta: 1, Src: s}
+		for i := range e {
+			e[i] = (law.Rand() - shape) / root
+		}
 	}
 }
 
@@ -101,48 +105,22 @@ type ContaminatedNoise struct {
 // Check finds nothing that the bounds of the options leave.
 func (*ContaminatedNoise) Check() error { return nil }
 
-func (l *ContaminatedNoise) fill(e []float64, s *Stream) {
-	sd := 1 / math.Sqrt(1-l.Fraction+l.Fraction*l.Ratio*l.Ratio)
-	for i := range e {
-		v := sd * s.normal()
-		if s.float64() < l.Fraction {
-			v *= l.Ratio
+func (l *ContaminatedNoise) errors() errorLaw {
+	share := l.Fraction
+	narrow := 1 / math.Sqrt(1-share+share*l.Ratio*l.Ratio)
+	wide := narrow * l.Ratio
+	return func(e []float64, s *Stream) {
+		s.normals(e)
+		for i := range e {
+			if open01(s.Uint64()) < share {
+				e[i] *= wide
+			} else {
+				e[i] *= narrow
+			}
 		}
-		e[i] = v
 	}
 }
 
 func (l *ContaminatedNoise) describe() string {
 	return fmt.Sprintf("contaminated %v %v", l.Fraction, l.Ratio)
 }
-
-// FileNoise draws from a file of residuals with replacement, less their mean and
-// over the root of their mean square deviation, so that the law drawn from has
-// variance 1.
-type FileNoise struct{ Column }
-
-// Check refuses residuals that do not vary.
-func (l *FileNoise) Check() error {
-	if _, sd := l.moments(); !(sd > 0) {
-		return &OptionError{"file", l.File, "a file of at least two different residuals"}
-	}
-	return nil
-}
-
-// moments returns the mean and the standard deviation with divisor N.
-func (l *FileNoise) moments() (mean, sd float64) {
-	if len(l.Values) == 0 {
-		return 0, 0
-	}
-	mean, variance := stat.PopMeanVariance(l.Values, nil)
-	return mean, math.Sqrt(variance)
-}
-
-func (l *FileNoise) fill(e []float64, s *Stream) {
-	mean, sd := l.moments()
-	for i := range e {
-		e[i] = (l.Values[s.intn(len(l.Values))] - mean) / sd
-	}
-}
-
-func (l *FileNoise) describe() string { return "from-file " + l.digest() }

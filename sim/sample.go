@@ -20,9 +20,9 @@ type Sample struct {
 	Train Set
 	Held  Set
 
-	stream  *Stream
-	scratch expr.Scratch
-	scale   []float64
+	stream       Stream
+	truth, scale expr.Scratch // one each, as a scratch keeps the constants of what it served last
+	at           []float64    // scale at the x of a set
 }
 
 // Purposes of streams. They are part of the output format.
@@ -36,18 +36,14 @@ const (
 // Draw draws a replicate into s, overwriting what it held. What comes out depends
 // on the seed, the cell and the replicate alone.
 func (c *Cell) Draw(seed uint64, replicate int, s *Sample) {
-	if s.stream == nil {
-		s.stream = newStream()
-	}
 	s.Train.resize(c.N)
 	s.Held.resize(c.HeldOut)
 	c.trainX(seed, replicate, s)
-	c.fill(seed, replicate, forTrainE, c.Noise.AR1, &s.Train, s)
+	c.readings(seed, replicate, forTrainE, c.Noise.AR1, &s.Train, s)
 
 	s.stream.set(seed, c.hash, replicate, forHeldX)
-	c.Design.Law.draw(s.Held.X, c.Truth.Lo, c.Truth.Hi, s.stream)
-	c.Design.round(s.Held.X, c.Truth.Lo, c.Truth.Hi)
-	c.fill(seed, replicate, forHeldE, 0, &s.Held, s)
+	c.x.draw(s.Held.X, &s.stream)
+	c.readings(seed, replicate, forHeldE, 0, &s.Held, s)
 }
 
 // trainX sets the training x: as given, as first drawn, or drawn anew.
@@ -60,28 +56,28 @@ func (c *Cell) trainX(seed uint64, replicate int, s *Sample) {
 		replicate = 0
 	}
 	s.stream.set(seed, c.hash, replicate, forTrainX)
-	c.Design.Law.draw(s.Train.X, c.Truth.Lo, c.Truth.Hi, s.stream)
-	c.Design.round(s.Train.X, c.Truth.Lo, c.Truth.Hi)
+	c.x.draw(s.Train.X, &s.stream)
 }
 
-// fill sets the means and the readings of a set whose x are drawn.
-func (c *Cell) fill(seed uint64, replicate int, purpose string, rho float64, set *Set, s *Sample) {
-	c.Truth.Eval(set.F, set.X, &s.scratch)
+// readings sets the means and the readings of a set whose x are drawn, with errors
+// correlated by rho in x order.
+func (c *Cell) readings(seed uint64, replicate int, purpose string, rho float64, set *Set, s *Sample) {
+	c.Truth.Eval(set.F, set.X, &s.truth)
 	s.stream.set(seed, c.hash, replicate, purpose)
 	e := set.Y
-	c.Noise.Law.fill(e, s.stream)
+	c.errors(e, &s.stream)
 	if rho != 0 {
 		correlate(e, rho)
 	}
 	if c.Noise.Scale != nil {
-		s.scale = resize(s.scale, len(e))
-		c.Noise.Scale.Eval(s.scale, set.X, &s.scratch)
-		for i, v := range s.scale {
+		s.at = resize(s.at, len(e))
+		c.Noise.Scale.Eval(s.at, set.X, &s.scale)
+		for i, v := range s.at {
 			e[i] *= v
 		}
 	}
 	for i, f := range set.F {
-		set.Y[i] = f + c.SD*e[i]
+		e[i] = f + c.SD*e[i]
 	}
 }
 
@@ -97,7 +93,7 @@ func correlate(e []float64, rho float64) {
 // Stream returns a stream of its own for a purpose that is not one of drawing, such
 // as dealing folds.
 func (c *Cell) Stream(seed uint64, replicate int, purpose string) *Stream {
-	s := newStream()
+	s := new(Stream)
 	s.set(seed, c.hash, replicate, "use: "+purpose)
 	return s
 }

@@ -3,28 +3,26 @@ package sim
 import (
 	"crypto/sha256"
 	"encoding/binary"
+	"math/bits"
 
-	//lint:ignore SA1019 its PCG source is the one whose 128 bits of state can be set whole
+	//lint:ignore SA1019 math/rand/v2 has the same generator, but not in a form that a loop keeps in registers; and the numbers drawn are part of the output format
 	"golang.org/x/exp/rand"
 )
 
+// A generator makes random bits: the PCG XSL RR 128/64 (O'Neill 2014, Harvey Mudd
+// College technical report HMC-CS-2014-0905), one sequence of 2¹²⁸ numbers.
+type generator = rand.PCGSource
+
 // A Stream is a source of random numbers for one purpose in one replicate of one
 // cell. It also serves wherever a math/rand/v2 Source is wanted.
-type Stream struct {
-	source rand.PCGSource
-	rand   *rand.Rand // reads source
-}
-
-// newStream returns a stream that set has yet to place.
-func newStream() *Stream {
-	s := &Stream{}
-	s.rand = rand.New(&s.source)
-	return s
-}
+//
+// Streams are stretches of the generator's one sequence: that any two of a million
+// streams of a billion numbers each overlap has probability 2⁻⁵⁸.
+type Stream struct{ source generator }
 
 // streamVersion is part of every stream's hash. The mapping from (seed, cell,
-// replicate, purpose) to numbers is part of the output format: whoever changes it
-// changes every result, and must change this word.
+// replicate, purpose) to numbers, and from numbers to draws of a law, is part of the
+// output format: whoever changes it changes every result, and must change this word.
 const streamVersion = "bendtest stream 1"
 
 // set places the stream at the start of its sequence: all 128 bits of the
@@ -46,32 +44,51 @@ func (s *Stream) set(seed uint64, cell string, replicate int, purpose string) {
 // Uint64 returns 64 random bits.
 func (s *Stream) Uint64() uint64 { return s.source.Uint64() }
 
-// float64 is uniform on the open interval (0, 1), on a grid of 2⁻⁵³ shifted by half
-// a step, so that neither end is ever drawn.
-func (s *Stream) float64() float64 {
-	return (float64(s.source.Uint64()>>11) + 0.5) / (1 << 53)
+// open01 makes 64 random bits a number uniform on the open interval (0, 1), on a grid
+// of 2⁻⁵³ shifted by half a step, so that neither end is ever drawn.
+func open01(bits uint64) float64 { return (float64(int64(bits>>11)) + 0.5) / (1 << 53) }
+
+// uniforms fills u with independent uniforms on (0, 1).
+func (s *Stream) uniforms(u []float64) {
+	q := s.source // a copy stays in registers
+	for i := range u {
+		u[i] = open01(q.Uint64())
+	}
+	s.source = q
 }
 
-// normal is standard normal.
-func (s *Stream) normal() float64 { return s.rand.NormFloat64() }
+// normals fills e with independent standard normals.
+func (s *Stream) normals(e []float64) { s.source = normalLayers.draw(e, s.source, bothSides) }
 
-// exponential has mean 1.
-func (s *Stream) exponential() float64 { return s.rand.ExpFloat64() }
+// laplaces fills e with independent double exponentials of mean size 1.
+func (s *Stream) laplaces(e []float64) { s.source = exponentialLayers.draw(e, s.source, bothSides) }
 
-// intn is uniform on 0 … n−1.
-func (s *Stream) intn(n int) int { return s.rand.Intn(n) }
-
-// ascending fills u with the order statistics of uniforms on (0, 1), in one pass:
-// the running sums of len(u) + 1 exponential spacings over their total (Devroye
-// 1986, Non-Uniform Random Variate Generation, §V.3.1).
-func (s *Stream) ascending(u []float64) {
+// ascending fills x with the order statistics of uniforms on (lo, hi): the running
+// sums of len(x) + 1 exponential spacings over their total (Devroye 1986, Non-Uniform
+// Random Variate Generation, §V.3.1).
+func (s *Stream) ascending(x []float64, lo, hi float64) {
+	s.source = exponentialLayers.draw(x, s.source, oneSide)
+	var last [1]float64
+	s.source = exponentialLayers.draw(last[:], s.source, oneSide)
 	sum := 0.0
-	for i := range u {
-		sum += s.exponential()
-		u[i] = sum
+	for i, gap := range x {
+		sum += gap
+		x[i] = sum
 	}
-	total := sum + s.exponential()
-	for i := range u {
-		u[i] /= total
+	scale := (hi - lo) / (sum + last[0])
+	for i, v := range x {
+		x[i] = min(lo+v*scale, hi) // which rounding could pass
 	}
+}
+
+// below is uniform on 0 … n−1, without bias (Lemire 2019, ACM TOMACS 29(1):3).
+func (s *Stream) below(n int) int {
+	m := uint64(n)
+	high, low := bits.Mul64(s.source.Uint64(), m)
+	if low < m {
+		for uneven := -m % m; low < uneven; {
+			high, low = bits.Mul64(s.source.Uint64(), m)
+		}
+	}
+	return int(high)
 }
