@@ -45,6 +45,11 @@ func Families() []Family {
 			New: func() Smoother { return NewRegressionSpline() },
 		},
 		{
+			Name: "penalised-spline", Doc: "cubic spline on equal segments, differences of its coefficients are penalised",
+			Tuning: "λ of Σ(y − g)² + λΣ(second differences)²", LowestDF: 2,
+			New: func() Smoother { return NewPenalisedSpline() },
+		},
+		{
 			Name: "polynomial", Doc: "least squares on a global polynomial of degree df − 1",
 			Tuning: "degree", LowestDF: 1, WholeDF: true,
 			New: func() Smoother { return NewPolynomial() },

@@ -5,9 +5,10 @@ import (
 	"math"
 )
 
-// RegressionSpline is least squares on a spline with few knots. Its tuning is the
-// number of interior knots: df − degree − 1 for B-splines, df − 2 for the natural
-// cubic spline, whose boundary knots are the ends of the data.
+// RegressionSpline is least squares on a spline with few knots (de Boor 2001, A
+// Practical Guide to Splines, ch. XIV). Its tuning is the number of interior knots:
+// df − degree − 1, or df − 2 for the natural cubic spline, whose boundary knots are
+// the ends of the data.
 type RegressionSpline struct {
 	Degree  int    `option:"degree" min:"1" max:"10" doc:"degree of the pieces; a natural spline has 3"`
 	Knots   string `option:"knots" oneof:"quantiles equispaced" doc:"interior knots at sample quantiles j/(K+1), or equally spaced over the data"`
@@ -20,37 +21,82 @@ func NewRegressionSpline() *RegressionSpline {
 	return &RegressionSpline{Degree: 3, Knots: "quantiles", Beyond: "extend"}
 }
 
-// Check refuses a natural spline that is not cubic, and unknown words.
+// Check implements Smoother.
 func (s *RegressionSpline) Check() error {
-	switch {
-	case s.Degree < 1 || s.Degree > maxDegree:
+	if s.Degree < 1 || s.Degree > maxDegree {
 		return &OptionError{"degree", fmt.Sprint(s.Degree), fmt.Sprintf("1 to %d", maxDegree)}
-	case s.Natural && s.Degree != 3:
-		return &OptionError{"degree", fmt.Sprint(s.Degree), "3 with natural = true"}
-	case s.Knots != "quantiles" && s.Knots != "equispaced":
-		return &OptionError{"knots", fmt.Sprintf("%q", s.Knots), "one of quantiles, equispaced"}
 	}
-	return checkBeyond(s.Beyond)
+	if s.Natural && s.Degree != 3 {
+		return &OptionError{"degree", fmt.Sprint(s.Degree), "3 where natural = true"}
+	}
+	if err := oneOf("knots", s.Knots, "quantiles", "equispaced"); err != nil {
+		return err
+	}
+	return oneOf("beyond", s.Beyond, "extend", "hold")
 }
 
-// On lays the smoother out on x.
+// On implements Smoother. It panics on options that Check refuses.
 func (s *RegressionSpline) On(x []float64, mem *Arena) Ladder {
-	l := &knotLadder{
-		spline: *s, mem: mem,
-		line: polyLadder{design: gather(x, mem), mem: mem, hold: s.Beyond == "hold"},
+	if err := s.Check(); err != nil {
+		panic("smoothers: " + err.Error())
 	}
-	z := l.line.design.z
-	l.lo, l.hi = z[0], z[len(z)-1]
+	l := &knotLadder{spline: *s, design: gather(x, mem), mem: mem}
+	l.lo, l.hi = l.design.z[0], l.design.z[len(l.design.z)-1]
 	return l
 }
 
-// A knotLadder is a regression spline on a design. Points are counted from the
+// A knotLadder is a regression spline on a design. Places are counted from the
 // design's origin.
 type knotLadder struct {
 	spline RegressionSpline
+	design tied
 	mem    *Arena
-	line   polyLadder // the polynomials that stand in below the smallest spline
-	lo, hi float64    // ends of the basis: those of the data
+	lo, hi float64 // ends of the basis: those of the data
+	spread windowSpread
+}
+
+// The notes of rungs of a regression spline.
+const (
+	notePolynomial = "fewer df than the smallest spline has: a polynomial"
+	noteWhole      = "df is a whole number here"
+	noteFewDF      = "df is at least 1"
+	noteDistinct   = "more df than distinct x"
+	noteCoincide   = "knots coincide"
+	noteSparse     = "too few distinct x between the knots"
+	noteDigits     = "the x determine the spline to fewer than nine digits"
+	noteRange      = "the range of x is too large or too small for its reciprocal"
+)
+
+// AtDF implements Ladder.
+func (l *knotLadder) AtDF(dfs []float64) []Rung {
+	rungs := make([]Rung, len(dfs))
+	solvers := make([]knotSolver, len(dfs))
+	for i, df := range dfs {
+		r := &rungs[i]
+		r.DF = df
+		if r.Status, r.Note = l.admit(df); r.Status == OK {
+			l.lay(r, &solvers[i])
+		}
+	}
+	return rungs
+}
+
+// AtTuning implements Ladder. Where a status stands in for the rung, DF is 0.
+func (l *knotLadder) AtTuning(knots []float64) []Rung {
+	rungs := make([]Rung, len(knots))
+	solvers := make([]knotSolver, len(knots))
+	for i, k := range knots {
+		r := &rungs[i]
+		r.DF = k + float64(l.smallest())
+		if r.Status, r.Note = l.admit(r.DF); r.Status == OK && !(k >= 0) {
+			r.Status, r.Note = DFUnattainable, noteFewDF
+		}
+		if r.Status == OK {
+			l.lay(r, &solvers[i])
+		}
+		r.Tuning, r.DF = k, r.TrS
+	}
+	return rungs
 }
 
 // smallest is the df of the spline without interior knots.
@@ -61,111 +107,115 @@ func (l *knotLadder) smallest() int {
 	return l.spline.Degree + 1
 }
 
-// AtDF takes whole df from 1 to the number of distinct x. Up to the smallest spline
-// it is the polynomial of that many coefficients, which the note says.
-func (l *knotLadder) AtDF(dfs []float64) []Rung {
-	rungs := make([]Rung, len(dfs))
-	for i, df := range dfs {
-		switch {
-		case !l.line.attainable(df):
-			rungs[i] = Rung{DF: df, Status: DFUnattainable}
-		case df <= float64(l.smallest()):
-			rungs[i] = l.line.AtDF([]float64{df})[0]
-			rungs[i].Tuning = 0
-			if df < float64(l.smallest()) {
-				rungs[i].Note = "polynomial: too few df for the spline"
-			}
-		default:
-			rungs[i] = l.rung(int(df))
-		}
+// admit says whether there can be a rung at df.
+func (l *knotLadder) admit(df float64) (Status, string) {
+	width := l.hi - l.lo
+	switch {
+	case !(df >= 1):
+		return DFUnattainable, noteFewDF
+	case df > float64(len(l.design.z)):
+		return DFUnattainable, noteDistinct
+	case df != math.Trunc(df):
+		return DFUnattainable, noteWhole
+	case df > 1 && (math.IsInf(width, 1) || math.IsInf(1/width, 1)):
+		return NotFinite, noteRange
 	}
-	return rungs
+	return OK, ""
 }
 
-// AtTuning takes numbers of interior knots.
-func (l *knotLadder) AtTuning(knots []float64) []Rung {
-	dfs := make([]float64, len(knots))
-	for i, k := range knots {
-		dfs[i] = k + float64(l.smallest())
-		if !(k >= 0) {
-			dfs[i] = math.NaN()
-		}
-	}
-	rungs := l.AtDF(dfs)
-	for i := range rungs {
-		if rungs[i].Status != OK {
-			rungs[i].DF, rungs[i].Tuning = max(dfs[i], 0), max(knots[i], 0)
-		}
-	}
-	return rungs
-}
+// mostCondition bounds the magnification of rounding errors by the least-squares
+// problem: 9 digits of 16 are to be left.
+const mostCondition = 1e6
 
-// rung makes the rung with interior knots.
-func (l *knotLadder) rung(df int) Rung {
-	interior := df - l.smallest()
-	basis := bspline{degree: l.spline.Degree, knots: l.mem.floats(interior + 2*l.spline.Degree + 2)}
-	d := l.spline.Degree
-	for k := range d + 1 {
-		basis.knots[k] = l.lo
-		basis.knots[d+1+interior+k] = l.hi
+// lay works out all of a rung that y does not touch.
+func (l *knotLadder) lay(r *Rung, s *knotSolver) {
+	n, m := len(l.design.x), len(l.design.z)
+	df := int(r.DF)
+	degree, interior := l.spline.Degree, df-l.smallest()
+	natural := l.spline.Natural && interior > 0
+	if l.spline.Natural && interior == 0 || interior < 0 {
+		degree = df - 1
 	}
-	l.place(basis.knots[d+1 : d+1+interior])
-	r := Rung{DF: float64(df), Tuning: float64(interior)}
-	if !supports(&basis, l.line.design.z) {
-		r.Status = RankDeficient
-		return r
+	if interior < 0 {
+		interior, r.Note = 0, notePolynomial
 	}
-	s := newBandedFit(&basis, &l.line.design, l.spline.Natural, l.mem)
-	s.hold = l.spline.Beyond == "hold"
-	if !s.factor(l.mem) {
-		r.Status = RankDeficient
-		return r
+	*s = knotSolver{ladder: l}
+	if !l.place(&s.basis.bspline, degree, interior) {
+		*r = Rung{DF: r.DF, Tuning: float64(interior), Status: RankDeficient, Note: noteCoincide}
+		return
 	}
-	n := len(l.line.design.x)
-	r.TrS, r.TrSTS, r.DFResidual = r.DF, r.DF, float64(n)-r.DF
-	r.Leverage, r.Remainder = l.mem.floats(n), l.mem.floats(n)
-	s.leverages(r.Leverage[:len(l.line.design.z)], l.mem)
-	l.line.design.spread(r.Leverage, r.Leverage[:len(l.line.design.z)])
-	projectionRemainder(r.Remainder, r.Leverage)
-	r.RowNorm2 = r.Leverage // S is a projection
+	if natural {
+		s.basis.ends = newNaturalEnds(&s.basis.bspline)
+	}
+	s.qr = s.basis.on(&l.design, min(degree+1, df), l.mem)
+	if s.qr.rank() < df {
+		*r = Rung{DF: r.DF, Tuning: float64(interior), Status: RankDeficient, Note: noteSparse}
+		return
+	}
+	s.qr.compress()
+	leverage, rest := l.mem.floats(n), l.mem.floats(n)
+	l.spread.on(&s.qr, l.mem)
+	if c := l.spread.factor(leverage[:m], rest[:m]); !(c <= mostCondition) {
+		*r = Rung{DF: r.DF, Tuning: float64(interior), Status: RankDeficient, Note: noteDigits}
+		return
+	}
+	l.design.share(leverage, rest)
+	r.Tuning, r.TrS, r.TrSTS, r.DFResidual = float64(interior), r.DF, r.DF, float64(n)-r.DF
+	r.Leverage, r.RowNorm2, r.Remainder = leverage, leverage, rest // S is a projection
 	r.solver = s
-	return r
 }
 
-// place writes the interior knots: sample quantiles at j/(K+1) with linear
-// interpolation between order statistics, position p(n−1), or equal spacing.
-func (l *knotLadder) place(knots []float64) {
-	x := l.line.design.x
-	for j := range knots {
-		p := float64(j+1) / float64(len(knots)+1)
-		if l.spline.Knots == "equispaced" {
-			knots[j] = l.lo + p*(l.hi-l.lo)
-			continue
-		}
-		at := p * float64(len(x)-1)
-		i := int(at)
-		knots[j] = x[i]
-		if i+1 < len(x) {
-			knots[j] += (at - float64(i)) * (x[i+1] - x[i])
+// leastRemainder is the least 1 − leverage that is told from 0: with less, a residual
+// is all rounding.
+const leastRemainder = 1e-13
+
+// share turns the leverages of the distinct x, and what they leave, into those of
+// the observations, in place.
+func (d *tied) share(leverage, rest []float64) {
+	for i, c := range d.count {
+		leverage[i] /= c
+		if rest[i] = (c - 1 + rest[i]) / c; rest[i] < leastRemainder {
+			rest[i] = 0
 		}
 	}
+	m := len(d.z)
+	d.spread(leverage, leverage[:m])
+	d.spread(rest, rest[:m])
 }
 
-// supports reports whether each basis function can be given a distinct x of its own
-// within its support: the Schoenberg–Whitney condition for the spline to be
-// determined (de Boor 2001, ch. XIII). The end functions are 1 at their ends.
-func supports(b *bspline, z []float64) bool {
-	i := 0
-	for j := range b.size() {
-		lo, hi := b.knots[j], b.knots[j+b.degree+1]
-		for i < len(z) && !(z[i] > lo || z[i] == lo && b.knots[j+b.degree] == lo) {
-			i++
+// place lays the knots, and reports whether they all differ.
+func (l *knotLadder) place(b *bspline, degree, interior int) bool {
+	b.degree = degree
+	b.knots = l.mem.floats(interior + 2*degree + 2)
+	inner := b.knots[degree+1 : degree+1+interior]
+	for k := range degree + 1 {
+		b.knots[k] = l.lo
+		b.knots[degree+1+interior+k] = l.hi
+	}
+	if l.spline.Knots == "equispaced" {
+		for j := range inner {
+			inner[j] = l.lo + (l.hi-l.lo)*float64(j+1)/float64(interior+1)
 		}
-		last := b.knots[j+1] == hi // the last function is 1 at the upper end
-		if i == len(z) || !(z[i] < hi || z[i] == hi && last) {
+	} else {
+		quantiles(inner, l.design.x)
+	}
+	for k := degree; k <= degree+interior; k++ {
+		if !(b.knots[k] < b.knots[k+1]) && interior > 0 {
 			return false
 		}
-		i++
 	}
 	return true
+}
+
+// quantiles writes the sample quantiles j/(K+1), j = 1 … K, of the ascending x: at
+// position j(n−1)/(K+1) among them, counted from 0, linear between order statistics.
+func quantiles(dst, x []float64) {
+	for j := range dst {
+		steps, parts := (j+1)*(len(x)-1), len(dst)+1
+		i, part := steps/parts, steps%parts
+		dst[j] = x[i]
+		if part > 0 {
+			dst[j] += float64(part) / float64(parts) * (x[i+1] - x[i])
+		}
+	}
 }

@@ -128,7 +128,7 @@ func TestRegressionSplineHasItsExactMeanErrors(t *testing.T) {
 	}
 	l := NewRegressionSpline().On(x, nil).(*knotLadder)
 	l.spline.Knots = "equispaced"
-	l.lo, l.hi = 0-l.line.design.origin, 1-l.line.design.origin
+	l.lo, l.hi = 0-l.design.origin, 1-l.design.origin
 	r := l.AtDF([]float64{8})
 	var fit Fit
 	r[0].Fit(f, &fit)
