@@ -42,6 +42,8 @@ func (l *polyLadder) AtDF(dfs []float64) []Rung {
 		switch {
 		case !l.attainable(df):
 			r.Status, r.Tuning = DFUnattainable, 0
+		case math.IsInf(basis.half, 1):
+			r.Status, r.Note = NotFinite, "the range of x overflows"
 		case int(df) > basis.size:
 			r.Status, r.Note = RankDeficient, "a polynomial of this degree has no digits left on these x"
 		default:
@@ -117,14 +119,4 @@ func (s *polySolver) solve(y []float64, f *Fit) {
 	}
 	f.poly = polyCurve{basis: b, c: append(f.poly.c[:0], c...), hold: s.hold}
 	f.Curve = &f.poly
-}
-
-// projectionRemainder writes 1 − S_ii. What is below rounding is 0: the point fits
-// itself.
-func projectionRemainder(dst, leverage []float64) {
-	for i, v := range leverage {
-		if dst[i] = 1 - v; dst[i] < 1e-13 {
-			dst[i] = 0
-		}
-	}
 }

@@ -178,6 +178,9 @@ func TestPolynomialStatuses(t *testing.T) {
 			t.Errorf("df %g: %v", r.DF, r.Status)
 		}
 	}
+	if r := NewPolynomial().On([]float64{-1e308, 0, 1e308}, nil).AtDF([]float64{2}); r[0].Status != NotFinite {
+		t.Errorf("a range that overflows: %v", r[0].Status)
+	}
 	near := []float64{0, 1e-9, 2e-9, 1, 1 + 1e-9, 2}
 	if r := NewPolynomial().On(near, nil).AtDF([]float64{3, 6}); r[0].Status != OK || r[1].Status != RankDeficient {
 		t.Errorf("near ties: %v, %v", r[0].Status, r[1].Status)
@@ -234,14 +237,4 @@ func BenchmarkPolynomial(b *testing.B) {
 			f.Curve.At(v, t)
 		}
 	})
-}
-
-// evenReadings returns n even x in [0, 1] and some readings.
-func evenReadings(n int) (x, y []float64) {
-	x, y = make([]float64, n), make([]float64, n)
-	for i := range x {
-		x[i] = (float64(i) + 0.5) / float64(n)
-		y[i] = math.Sin(6*x[i]) + math.Cos(float64(i*i))
-	}
-	return x, y
 }

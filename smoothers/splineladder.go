@@ -42,7 +42,7 @@ func (l *splineLadder) AtDF(dfs []float64) []Rung {
 		r := &rungs[i]
 		*r = Rung{DF: df, Status: DFUnattainable}
 		switch {
-		case !(df >= least && df <= most):
+		case l.overflows(r), !(df >= least && df <= most):
 		case df == least:
 			l.lay(r, &solvers[i], math.Inf(1))
 		case df == most:
@@ -62,12 +62,21 @@ func (l *splineLadder) AtTuning(tunings []float64) []Rung {
 	for i, lambda := range tunings {
 		r := &rungs[i]
 		*r = Rung{Tuning: lambda, Status: DFUnattainable}
-		if lambda >= 0 && len(l.design.z) >= l.order {
+		if !l.overflows(r) && lambda >= 0 && len(l.design.z) >= l.order {
 			l.lay(r, &solvers[i], math.Log(lambda)-l.logUnit)
 			r.DF, r.Tuning = r.TrS, lambda
 		}
 	}
 	return rungs
+}
+
+// overflows gives a rung its status if the range of x is no number.
+func (l *splineLadder) overflows(r *Rung) bool {
+	if !math.IsInf(l.span, 1) {
+		return false
+	}
+	r.Status, r.Note = NotFinite, "the range of x overflows"
+	return true
 }
 
 // guess is θ from the trace on an even design in the limit of many points, where the
@@ -105,10 +114,6 @@ func (l *splineLadder) spread(theta float64) {
 
 // lay fills in the rung at θ, which is −Inf for interpolation.
 func (l *splineLadder) lay(r *Rung, s *splineSolver, theta float64) {
-	if math.IsInf(l.span, 1) {
-		r.Status, r.Note = NotFinite, "the range of x overflows"
-		return
-	}
 	n := len(l.design.x)
 	r.Status = OK
 	r.TrS, r.TrSTS = l.trace(theta)
