@@ -87,16 +87,29 @@ func (c *localCurve) sweep(targets int) sweep {
 // value returns the fit at t from the design's origin.
 func (c *localCurve) value(s *sweep, t float64) float64 {
 	if s.wide && s.sums.at(t, false) {
-		return s.sums.value()
+		return s.sums.value(s.sums.l.degree)
 	}
 	g := &s.sums.gaze
 	if !s.wide {
 		g.at(t)
 	}
-	if !c.fit.at(g, t, everyone) {
-		c.fit.through(g, t)
+	return c.fit.valueAt(g, t, c.sums)
+}
+
+// valueAt returns the fit at t, where g is, from the sums of y.
+func (f *localFit) valueAt(g *gaze, t float64, sums []float64) float64 {
+	if f.quick(g, t, sums, false) {
+		return f.value(f.l.degree)
 	}
-	return c.fit.dot(c.sums)
+	f.safe(g, t)
+	return f.dot(sums)
+}
+
+// safe fits at t, where g is, in every case.
+func (f *localFit) safe(g *gaze, t float64) {
+	if !f.at(g, t, everyone) {
+		f.through(g, t)
+	}
 }
 
 // through makes f the polynomial through the means at the degree + 1 distinct x

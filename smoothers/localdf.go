@@ -81,12 +81,16 @@ func (l *localLadder) trace(tuning float64) (tr, slope float64) {
 		var lev, d float64
 		switch {
 		case wide && s.at(t, true):
-			lev, d = s.leverage()
+			lev, d = s.leverage(l.degree)
 		case wide:
-			lev, d = l.fit.leverage(&s.gaze, t)
+			lev, d = l.fit.leverageAt(&s.gaze, t)
 		default:
 			s.gaze.at(t)
-			lev, d = l.fit.leverage(&s.gaze, t)
+			if l.fit.quick(&s.gaze, t, nil, true) {
+				lev, d = l.fit.leverage(l.degree)
+			} else {
+				lev, d = l.fit.leverageAt(&s.gaze, t)
+			}
 		}
 		tr += l.count[i] * lev
 		slope += l.count[i] * d * s.gaze.growth(tuning)
@@ -94,9 +98,9 @@ func (l *localLadder) trace(tuning float64) (tr, slope float64) {
 	return tr, slope
 }
 
-// leverage returns S_ii at an x = t and its derivative by log h. With κ the weights
+// leverageAt returns S_ii at an x = t and its derivative by log h. With κ the weights
 // of the fit free of w, S_ii = κ(t) and its derivative is −Σ_g (∂a_g/∂log h) κ_g².
-func (f *localFit) leverage(g *gaze, t float64) (lev, slope float64) {
+func (f *localFit) leverageAt(g *gaze, t float64) (lev, slope float64) {
 	f.at(g, t, everyone)
 	for i, c := range f.l.count[f.lo:f.hi] {
 		k := f.kappa(i)

@@ -26,6 +26,8 @@ type localFit struct {
 	c0, c1, c2 float64
 	far        float64 // log of the gaussian weight of the nearest point used, which is scaled to 1
 	points     int     // distinct x with weight
+
+	moments // of the quick way
 }
 
 // scratch is the number of floats a localFit works on.
@@ -120,6 +122,24 @@ func (f *localFit) at(g *gaze, t float64, self int) bool {
 
 // weigh fills u, w and a, and counts the points with weight.
 func (f *localFit) weigh(g *gaze, t float64, self int) {
+	f.weights(g, t, self)
+	w, a := f.w[:f.hi-f.lo], f.a[:f.hi-f.lo]
+	count := f.l.count[f.lo:f.hi]
+	f.points = len(a)
+	for i, w := range w {
+		a[i] = w * count[i]
+	}
+	if self >= 0 {
+		i := self - f.lo
+		a[i] = w[i] * (count[i] - 1)
+		if a[i] == 0 {
+			f.points--
+		}
+	}
+}
+
+// weights fills u and w, and a with 1 − |u| if the kernel has compact support.
+func (f *localFit) weights(g *gaze, t float64, self int) {
 	z := f.l.z[f.lo:f.hi]
 	u, w, a := f.u[:len(z)], f.w[:len(z)], f.a[:len(z)]
 	inv := 1 / g.h
@@ -138,18 +158,6 @@ func (f *localFit) weigh(g *gaze, t float64, self int) {
 		f.l.shape.weigh(w, a)
 	} else {
 		f.gaussian(g, t, self)
-	}
-	count := f.l.count[f.lo:f.hi]
-	f.points = len(a)
-	for i, w := range w {
-		a[i] = w * count[i]
-	}
-	if self >= 0 {
-		i := self - f.lo
-		a[i] = w[i] * (count[i] - 1)
-		if a[i] == 0 {
-			f.points--
-		}
 	}
 }
 

@@ -134,16 +134,18 @@ func (b *panelMaker) march(from, to, length float64) float64 {
 func (b *panelMaker) append(t float64) {
 	f := b.fit
 	switch {
-	case b.follow && b.moving.at(t, false):
-		b.gaze = b.moving.gaze
+	case b.follow && b.moved(t):
 		b.lo = append(b.lo, 0)
-		b.weight = append(b.weight, b.moving.value())
+		b.weight = append(b.weight, b.moving.value(b.l.degree))
 	case b.sums != nil:
-		b.evaluate(t)
+		if !b.follow {
+			b.gaze.at(t)
+		}
 		b.lo = append(b.lo, 0)
-		b.weight = append(b.weight, f.dot(b.sums))
+		b.weight = append(b.weight, f.valueAt(&b.gaze, t, b.sums))
 	default:
-		b.evaluate(t)
+		b.gaze.at(t)
+		f.safe(&b.gaze, t)
 		b.lo = append(b.lo, float64(f.lo))
 		for i, w := range f.w[:f.hi-f.lo] {
 			b.weight = append(b.weight, w*f.kappa(i))
@@ -152,12 +154,12 @@ func (b *panelMaker) append(t float64) {
 	b.end = append(b.end, float64(len(b.weight)))
 }
 
-// evaluate makes b.fit the fit at t.
-func (b *panelMaker) evaluate(t float64) {
-	b.gaze.at(t)
-	if !b.fit.at(&b.gaze, t, everyone) {
-		b.fit.through(&b.gaze, t)
-	}
+// moved moves the sums to t. It reports false if they are not safe there; gaze is at t
+// in any case.
+func (b *panelMaker) moved(t float64) bool {
+	ok := b.moving.at(t, false)
+	b.gaze = b.moving.gaze
+	return ok
 }
 
 // functional writes the functional at t into s.

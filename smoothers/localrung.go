@@ -152,9 +152,12 @@ func (l *localLadder) enter(r *Rung, i int, lev, rem, rest float64) {
 func (l *localLadder) layBySums(r *Rung) {
 	s, q := l.sumsOn(r.Tuning, nil), l.squaredSumsOn(r.Tuning)
 	for i, t := range l.z {
-		if s.at(t, false) && s.k0 < 0.5 && q.moments(t, false) {
+		if s.at(t, false) && s.k0 < 0.5 && q.gather(t, false) {
+			if l.shape == gaussian {
+				rescale(q.m[:2*l.degree+1], 1/math.Sqrt2) // its width is narrower
+			}
 			lev := s.k0
-			l.enter(r, i, lev, 1-lev, s.norm2(&q)-lev*lev)
+			l.enter(r, i, lev, 1-lev, s.quadratic(l.degree, q.m[:])-lev*lev)
 			continue
 		}
 		l.layRow(r, &s.gaze, i)

@@ -27,11 +27,7 @@ type localSums struct {
 	even, odd   powerSums // without and with the sign
 	tops        [2]int    // powers kept, of count and of y
 
-	m  [7]float64 // Σ w u^j, u = (z − t)/h
-	dm [5]float64 // Σ ∂w/∂log h u^j
-	ym [3]float64 // Σ w Y u^j
-
-	k0, k1, k2 float64 // the fit takes y with weights w (k0 + k1 u + k2 u²)
+	moments
 }
 
 // powerSums holds sums of powers, of the counts and of y.
@@ -105,11 +101,11 @@ func (l *localLadder) wide(tuning float64) bool {
 // at moves to t and works out the fit there. It reports false beyond the data and
 // where the window is too thin for sums to be safe; gaze is then at t all the same.
 func (s *localSums) at(t float64, slope bool) bool {
-	return s.moments(t, slope) && s.solve()
+	return s.gather(t, slope) && s.solve(s.l.degree)
 }
 
-// moments moves to t and works out the moments there, like at.
-func (s *localSums) moments(t float64, slope bool) bool {
+// gather moves to t and works out the moments there, like at.
+func (s *localSums) gather(t float64, slope bool) bool {
 	g, z := &s.gaze, s.l.z
 	g.at(t)
 	if t < z[0] || t > z[len(z)-1] {

@@ -43,12 +43,12 @@ func compareSums(t *testing.T, name string, l *localLadder, tuning float64) {
 	left := 0
 	for i, v := range l.z {
 		g.at(v)
-		if !s.at(v, true) || !q.moments(v, false) {
+		if !s.at(v, true) || !q.gather(v, false) {
 			left++
 			continue
 		}
-		lev, slope := s.leverage()
-		want, wantSlope := l.fit.leverage(&g, v)
+		lev, slope := s.leverage(l.degree)
+		want, wantSlope := l.fit.leverageAt(&g, v)
 		check("leverage", v, lev, want, sumsTol)
 		check("its slope", v, slope, wantSlope, 1e-8) // a guide for steps only
 		row, _, _ := l.row(&g, i)
@@ -56,7 +56,10 @@ func compareSums(t *testing.T, name string, l *localLadder, tuning float64) {
 		for j, w := range row {
 			norm += w * w * l.count[l.fit.lo+j]
 		}
-		check("row norm", v, s.norm2(&q), norm, sumsTol)
+		if l.shape == gaussian {
+			rescale(q.m[:], 1/math.Sqrt2)
+		}
+		check("row norm", v, s.quadratic(l.degree, q.m[:]), norm, sumsTol)
 	}
 	if left > len(l.z)/5 {
 		t.Errorf("%s, tuning %g: sums gave up at %d of %d points", name, tuning, left, len(l.z))
@@ -65,7 +68,7 @@ func compareSums(t *testing.T, name string, l *localLadder, tuning float64) {
 	direct := sweep{sums: l.sumsOn(tuning, y)}
 	for _, v := range targets(l.x, 4) {
 		if s.at(v, false) {
-			check("value", v, s.value(), c.value(&direct, v), sumsTol)
+			check("value", v, s.value(l.degree), c.value(&direct, v), sumsTol)
 		}
 	}
 }
