@@ -39,12 +39,41 @@ func (p *Piecewise) At(dst, t []float64) {
 		p.Beyond.At(dst[to:], t[to:])
 		dst, t = dst[from:to], t[from:to]
 	}
-	k := 0
-	for i, ti := range t {
-		for k < last && ti >= p.Break[k+1] {
+	for i, k := 0, 0; i < len(t); {
+		for k < last && t[i] >= p.Break[k+1] {
 			k++
 		}
-		dst[i] = p.Piece(k, ti)
+		end := len(t)
+		if k < last {
+			end = i + 1
+			for end < len(t) && t[end] < p.Break[k+1] {
+				end++
+			}
+		}
+		p.along(k, dst[i:end], t[i:end])
+		i = end
+	}
+}
+
+// along evaluates the polynomial of piece k at all t, four at a time, since each
+// step of Horner's scheme waits for the last.
+func (p *Piecewise) along(k int, dst, t []float64) {
+	o, w := p.Origin[k], p.Width[k]
+	c := p.Coef[k*p.Order : (k+1)*p.Order]
+	top := len(c) - 1
+	dst = dst[:len(t)]
+	i := 0
+	for ; i+3 < len(t); i += 4 {
+		u0, u1, u2, u3 := (t[i]-o)/w, (t[i+1]-o)/w, (t[i+2]-o)/w, (t[i+3]-o)/w
+		v0, v1, v2, v3 := c[top], c[top], c[top], c[top]
+		for j := top - 1; j >= 0; j-- {
+			a := c[j]
+			v0, v1, v2, v3 = v0*u0+a, v1*u1+a, v2*u2+a, v3*u3+a
+		}
+		dst[i], dst[i+1], dst[i+2], dst[i+3] = v0, v1, v2, v3
+	}
+	for ; i < len(t); i++ {
+		dst[i] = p.Piece(k, t[i])
 	}
 }
 
