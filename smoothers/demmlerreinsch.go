@@ -1,5 +1,7 @@
 package smoothers
 
+import "math"
+
 // A reinschBasis is the basis that a penalised least-squares spline on a design thinks
 // in (Demmler & Reinsch 1975, Numer. Math. 24:375): coefficient vectors w_k with
 //
@@ -12,11 +14,12 @@ package smoothers
 // out (Eldén 1977, BIT 17:134): nothing is squared, λ plays no part, and of λ large or
 // small nothing overflows. With c = Nα + He, e = Dc, H the sequences with a single kink, RN
 // is brought to a triangle by two reflections; what these leave of RH is the matrix
-// wanted. Errors are of the order of rounding of the largest σ.
+// wanted. Errors are of the order of rounding of the norm of RH.
 type reinschBasis struct {
 	columns int       // q, the number of coefficients
 	sigma   []float64 // q − 2, descending; 0 where B does not see w_k
 	vectors []float64 // q × q by rows: the two lines, then w_k
+	norm    float64   // of RH, in the Frobenius norm: some six times the largest σ on most designs
 }
 
 // newReinschBasis works it out for at least four columns from the R of B. rank is that
@@ -27,6 +30,7 @@ func newReinschBasis(q *windowQR, rank int, mem *Arena) reinschBasis {
 	b := reinschBasis{columns: n, sigma: mem.floats(p), vectors: mem.floats(n * n)}
 	a := mem.floats(n * n)
 	penaltyForm(a, q)
+	b.norm = math.Sqrt(dot(a[2*n:], a[2*n:]))
 	for k := range 2 {
 		column := a[k*n+k : (k+1)*n]
 		tau := flip(column)

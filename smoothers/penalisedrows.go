@@ -33,7 +33,7 @@ func newPenaltyRows(q *windowQR, b *reinschBasis, rank int, mem *Arena) penaltyR
 			}
 		}
 	}
-	p.purify(b.sigma)
+	whole := p.purify(b)
 	for s := range segments {
 		if !q.dense(s) {
 			for i, u := range p.of(s) {
@@ -41,7 +41,7 @@ func newPenaltyRows(q *windowQR, b *reinschBasis, rank int, mem *Arena) penaltyR
 			}
 		}
 	}
-	if rank < m {
+	if rank < m || !whole {
 		all := mem.floats(rank)
 		for k := range all {
 			all[k] = 1
@@ -54,23 +54,40 @@ func newPenaltyRows(q *windowQR, b *reinschBasis, rank int, mem *Arena) penaltyR
 	return p
 }
 
-// faintSigma is the σ, relative to the largest, below which u = Bw/σ is mostly rounding.
-const faintSigma = 1e-5
+// faintSigma is the σ, relative to the norm whose rounding it suffers, below which u = Bw/σ
+// has too few digits.
+const faintSigma = 2e-6
 
 // purify makes the u_k of small σ orthonormal to all others and to one another. What is
 // left of their error is a turn among them that no λ large enough to have digits sees.
-func (p *penaltyRows) purify(sigma []float64) {
+// One that is nothing but rounding of the others is dropped, and reported as false.
+func (p *penaltyRows) purify(b *reinschBasis) (whole bool) {
+	whole = true
 	for k := 2; k < p.rank; k++ {
-		if sigma[k-2] > faintSigma*sigma[0] {
+		if b.sigma[k-2] > faintSigma*b.norm {
 			continue
 		}
-		for range 2 { // twice is enough
+		left := 0.0 // of the norm after taking the others out
+		for tries := 0; tries < 5 && !(left > 0.5); tries++ {
+			p.combine(k, k, 1/math.Sqrt(p.inner(k, k))-1)
 			for j := range k {
 				p.combine(k, j, -p.inner(k, j))
 			}
-			p.combine(k, k, 1/math.Sqrt(p.inner(k, k))-1)
+			left = math.Sqrt(p.inner(k, k))
+			if !(left > 0) {
+				break
+			}
 		}
+		if !(left > 0.5) {
+			whole = false
+			for i := k; i < len(p.rows); i += p.rank {
+				p.rows[i] = 0
+			}
+			continue
+		}
+		p.combine(k, k, 1/left-1)
 	}
+	return whole
 }
 
 // inner is the inner product of u_j and u_k.

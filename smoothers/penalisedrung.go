@@ -2,9 +2,9 @@ package smoothers
 
 import "math"
 
-// mostMagnified bounds σ_1 σ_k/(σ_k² + λ), by which errors of the σ and w, rounding of the
-// largest, may be magnified: fitted values are then off by at most 1e−9.
-const mostMagnified = 1e5
+// mostMagnified bounds norm·σ_k/(σ_k² + λ), by which rounding of the σ_k and w_k may be
+// magnified: fitted values are then off by at most 1e−9.
+const mostMagnified = 6e5
 
 // lay works out all of a rung that y does not touch.
 func (l *penaltyLadder) lay(r *Rung, s *penaltySolver, lambda float64) {
@@ -22,7 +22,7 @@ func (l *penaltyLadder) lay(r *Rung, s *penaltySolver, lambda float64) {
 			if math.IsInf(lambda, 1) {
 				g[k] = 1
 			}
-			magnified = max(magnified, l.sigma(2)*sigma*s.gain[k])
+			magnified = max(magnified, l.reinsch.norm*sigma*s.gain[k])
 		}
 		ff[k] = f[k] * f[k]
 		r.TrS += f[k]
