@@ -28,11 +28,14 @@ type fitReference struct {
 	AICc     float64
 	Fitted   []float64
 	Leverage []float64
+
+	At        []float64
+	Predicted []*float64 // null where the window of a local fit holds too few x
 }
 
 // fitTolerance is relative, for fitted values to the range of y: independent double
 // precision computations of the near-tied and crowded sets agree to about 1e-10.
-const fitTolerance = 1e-8
+const fitTolerance = 1e-9
 
 func TestFitAgreesWithIndependentComputations(t *testing.T) {
 	text, err := os.ReadFile("../../testdata/fit/references.json")
@@ -43,7 +46,7 @@ func TestFitAgreesWithIndependentComputations(t *testing.T) {
 	if err := json.Unmarshal(text, &file); err != nil {
 		t.Fatal(err)
 	}
-	if len(file.Cases) < 200 {
+	if len(file.Cases) < 280 {
 		t.Fatalf("only %d cases", len(file.Cases))
 	}
 	worst := map[string]float64{}
@@ -61,7 +64,7 @@ func compareFit(t *testing.T, c *fitReference) float64 {
 	t.Helper()
 	args := []string{
 		"fit", filepath.Join("..", "..", "testdata", "fit", c.Data), "--format", "json",
-		"--family", c.Family, "--df", strconv.FormatFloat(c.DF, 'g', -1, 64),
+		"--family", c.Family, "--df", strconv.FormatFloat(c.DF, 'g', -1, 64), "--at", pointsFile(t, c.At),
 	}
 	for name, v := range c.Options {
 		args = append(args, fmt.Sprintf("--%s=%v", name, v))
@@ -73,15 +76,15 @@ func compareFit(t *testing.T, c *fitReference) float64 {
 		return math.Inf(1)
 	}
 	var found []struct {
-		Status           string
-		TrS              float64 `json:"tr_s"`
-		TrSTS            float64 `json:"tr_sts"`
-		Tuning           float64
-		RSS              float64
-		GCV              float64
-		LOOCV            float64
-		AICc             float64
-		Fitted, Leverage []float64
+		Status                      string
+		TrS                         float64 `json:"tr_s"`
+		TrSTS                       float64 `json:"tr_sts"`
+		Tuning                      float64
+		RSS                         float64
+		GCV                         float64
+		LOOCV                       float64
+		AICc                        float64
+		Fitted, Leverage, Predicted []float64
 	}
 	if err := json.Unmarshal([]byte(stdout), &found); err != nil || len(found) != 1 || found[0].Status != "ok" {
 		t.Errorf("%s: %v\n%.300s", label, err, stdout)
@@ -109,7 +112,26 @@ func compareFit(t *testing.T, c *fitReference) float64 {
 		check(fmt.Sprint("fitted ", i), f.Fitted[i], c.Fitted[i], spread)
 		check(fmt.Sprint("leverage ", i), f.Leverage[i], c.Leverage[i], 1)
 	}
+	for i, want := range c.Predicted {
+		if want != nil {
+			check(fmt.Sprint("predicted ", i), f.Predicted[i], *want, max(spread, math.Abs(*want)))
+		}
+	}
 	return worst
+}
+
+// pointsFile writes a file of x to predict at.
+func pointsFile(t *testing.T, at []float64) string {
+	t.Helper()
+	text := "x\n"
+	for _, v := range at {
+		text += strconv.FormatFloat(v, 'g', -1, 64) + "\n"
+	}
+	path := filepath.Join(t.TempDir(), "at.csv")
+	if err := os.WriteFile(path, []byte(text), 0o644); err != nil {
+		t.Fatal(err)
+	}
+	return path
 }
 
 func TestFitPrintsEveryForm(t *testing.T) {

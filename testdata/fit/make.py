@@ -9,8 +9,9 @@ method that shares nothing with the program under test:
 
   smoothing spline   reproducing kernel of cubic splines with null space {1, x}
                      (Wahba 1990, Spline Models for Observational Data, section 1.3)
-  regression spline  scipy.interpolate.BSpline design matrix, orthogonal projection
-                     by SVD; natural: the null space of the end conditions
+  regression spline  scipy.interpolate.BSpline, orthogonal projection by SVD; natural:
+                     the null space of the end conditions, lines beyond
+  penalised spline   the same basis on equal segments, [B; sqrt(lam) D] by SVD
   polynomial         orthogonal projection on Legendre polynomials
   kernel, local      weighted least squares point by point, by QR
 
@@ -80,13 +81,16 @@ def widths(x, t, width, tuning):
     return low if lo >= len(x) else low + (q - lo) * (d[:, lo] - low)
 
 
-def local_matrix(x, kernel, degree, width, tuning):
-    h = widths(x, x, width, tuning)
-    s = np.zeros((len(x), len(x)))
-    for i, t in enumerate(x):
-        u = (x - t) / h[i]
+def local_rows(x, t, kernel, degree, width, tuning):
+    """Rows of S at the points t; a row of NaN where the window holds too few x."""
+    h = widths(x, t, width, tuning)
+    s = np.full((len(t), len(x)), np.nan)
+    for i, at in enumerate(t):
+        u = (x - at) / h[i]
         w = kernel_values(kernel, u)
-        root = np.sqrt(w)
+        if len(np.unique(x[w > 0])) < degree + 1:
+            continue
+        root = np.sqrt(w / w.max())
         basis = np.vander(u, degree + 1, increasing=True) * root[:, None]
         q, r = np.linalg.qr(basis)
         first = np.linalg.solve(r.T, np.eye(degree + 1)[0])
@@ -94,44 +98,92 @@ def local_matrix(x, kernel, degree, width, tuning):
     return s
 
 
-def spline_matrix(x, lam):
-    """I - lam (M^-1 - M^-1 T (T'M^-1 T)^-1 T'M^-1), M = K + lam I."""
-    span = x.max() - x.min()
-    u = (x - x.min()) / span
-    a, b = np.minimum.outer(u, u), np.maximum.outer(u, u)
-    lam = lam / span**3
-    m = a * a * (b - a / 3) / 2 + lam * np.eye(len(x))
-    trend = np.column_stack([np.ones_like(u), u - 0.5])
+def spline_rows(x, t, lam, order=2):
+    """g(t) = T(t) d + k(t) c with M c = y - T d and T' c = 0, M = K + lam I."""
+    lo, span = x.min(), np.ptp(x)
+    u, v = (x - lo) / span, (t - lo) / span
+
+    def kernel(p, q):
+        a, b = np.minimum.outer(p, q), np.maximum.outer(p, q)
+        k = a * a * (b - a / 3) / 2 if order == 2 else a
+        return np.where(a > 0, k, 0)  # nothing below the lowest x
+
+    def trend(p):
+        return np.column_stack([np.ones_like(p), p - 0.5][:order])
+
+    m = kernel(u, u) + lam / span ** (2 * order - 1) * np.eye(len(x))
+    if order == 1:
+        v = np.minimum(v, 1)  # level beyond the highest x
     inv = np.linalg.inv(m)
+    mt = inv @ trend(u)
+    d = np.linalg.solve(trend(u).T @ mt, mt.T)
+    c = inv - mt @ d
+    return trend(v) @ d + kernel(v, u) @ c
+
+
+def spline_matrix(x, lam, order=2):
+    """S = I - lam C, which keeps the digits that K C loses near interpolation."""
+    span = np.ptp(x)
+    lo = x.min()
+    u = (x - lo) / span
+    a, b = np.minimum.outer(u, u), np.maximum.outer(u, u)
+    k = a * a * (b - a / 3) / 2 if order == 2 else a
+    l = lam / span ** (2 * order - 1)
+    inv = np.linalg.inv(k + l * np.eye(len(x)))
+    trend = np.column_stack([np.ones_like(u), u - 0.5][:order])
     mt = inv @ trend
-    return np.eye(len(x)) - lam * (inv - mt @ np.linalg.solve(trend.T @ mt, mt.T))
+    return np.eye(len(x)) - l * (inv - mt @ np.linalg.solve(trend.T @ mt, mt.T))
 
 
-def projection(basis):
-    u, sv, _ = np.linalg.svd(basis / np.linalg.norm(basis, axis=0), full_matrices=False)
+def projection_rows(basis, at):
+    """Rows at new points of the projection on the columns of basis."""
+    scale = np.linalg.norm(basis, axis=0)
+    u, sv, vt = np.linalg.svd(basis / scale, full_matrices=False)
     assert sv[-1] > 1e-8 * sv[0], "rank-deficient reference"
-    return u @ u.T
+    return (at / scale) @ (vt.T / sv) @ u.T
 
 
-def regression_matrix(x, df, degree, knots, natural):
+def bspline_basis(t, degree):
+    """Values at any points: the end pieces go on beyond the ends."""
+    n = len(t) - degree - 1
+    return lambda u: np.array([BSpline(t, np.eye(n)[j], degree)(u) for j in range(n)]).T
+
+
+def regression_rows(x, at, df, degree, knots, natural):
     lo, hi = x.min(), x.max()
     k = int(df) - (2 if natural else degree + 1)
     p = np.arange(1, k + 1) / (k + 1)
     interior = np.quantile(x, p) if knots == "quantiles" else lo + p * (hi - lo)
     # Positions on [0, 1] keep the digits of x far from 0.
-    u, inner = (x - lo) / (hi - lo), (interior - lo) / (hi - lo)
+    u, v, inner = (x - lo) / (hi - lo), (at - lo) / (hi - lo), (interior - lo) / (hi - lo)
     t = np.concatenate([np.zeros(degree + 1), inner, np.ones(degree + 1)])
-    basis = BSpline.design_matrix(u, t, degree).toarray()
-    if natural:
-        n = len(t) - degree - 1
-        ends = np.array([BSpline(t, np.eye(n)[j], degree).derivative(2)([0.0, 1.0]) for j in range(n)]).T
-        basis = basis @ scipy.linalg.null_space(ends)
-    return projection(basis)
+    basis = bspline_basis(t, degree)
+    if not natural:
+        return projection_rows(basis(u), basis(v))
+    n = len(t) - degree - 1
+    ends = np.array([BSpline(t, np.eye(n)[j], degree).derivative(2)([0.0, 1.0]) for j in range(n)]).T
+    slope = np.array([BSpline(t, np.eye(n)[j], degree).derivative()(np.clip(v, 0, 1)) for j in range(n)]).T
+    null = scipy.linalg.null_space(ends)
+    inside = np.clip(v, 0, 1)
+    rows = basis(inside) + (v - inside)[:, None] * slope  # a line beyond
+    return projection_rows(basis(u) @ null, rows @ null)
 
 
-def polynomial_matrix(x, df):
-    u = 2 * (x - x.min()) / (x.max() - x.min()) - 1
-    return projection(np.polynomial.legendre.legvander(u, int(df) - 1))
+def polynomial_rows(x, at, df):
+    scale = lambda v: 2 * (v - x.min()) / np.ptp(x) - 1
+    basis = lambda v: np.polynomial.legendre.legvander(scale(v), int(df) - 1)
+    return projection_rows(basis(x), basis(at))
+
+
+def penalised_rows(x, at, lam, segments=20):
+    """Least squares on [B; sqrt(lam) D], by SVD."""
+    lo, span = x.min(), np.ptp(x)
+    t = np.arange(-3, segments + 4) / segments
+    basis = bspline_basis(t, 3)
+    b = basis((x - lo) / span)
+    d = np.diff(np.eye(segments + 3), 2, axis=0)
+    inv = np.linalg.pinv(np.vstack([b, np.sqrt(lam) * d]), rcond=1e-15)[:, : len(x)]
+    return basis((at - lo) / span) @ inv
 
 
 def solve(make, df, lo, hi):
@@ -140,15 +192,27 @@ def solve(make, df, lo, hi):
     return float(np.exp(brentq(f, lo, hi, xtol=1e-14, rtol=1e-15, maxiter=500)))
 
 
-def cases(name, x):
-    """(family, options, df, tuning, S) of everything compared on one data set."""
-    span = np.ptp(x)
-    for df in (2.5, 4, 7.3, 12):
-        top = np.log(span**3 * 1e4)
-        tuning = solve(lambda l: spline_matrix(x, l), df, top - 30, top)
-        yield "smoothing-spline", {}, df, tuning, spline_matrix(x, tuning)
+def points(x):
+    """Where to predict: within the data and a little beyond."""
+    share = np.array([-0.03, -0.01, 0.013, 0.25, 0.5001, 0.77, 0.99, 1.005, 1.02])
+    return x.min() + np.ptp(x) * share
+
+
+def cases(x):
+    """(family, options, df, tuning, S, rows of S at points(x))."""
+    span, at = np.ptp(x), points(x)
+    for order, dfs in ((2, (2.5, 4, 7.3, 12)), (1, (3, 6.5))):
+        make = lambda l: spline_matrix(x, l, order)
+        top = np.log(span ** (2 * order - 1) * 1e4)
+        for df in dfs:
+            tuning = solve(make, df, top - 30, top)
+            options = {} if order == 2 else {"order": 1}
+            yield "smoothing-spline", options, df, tuning, make(tuning), spline_rows(x, at, tuning, order)
+    for df in (4, 8.5, 13):
+        tuning = solve(lambda l: penalised_rows(x, x, l), df, np.log(1e-7), np.log(1e7))
+        yield "penalised-spline", {}, df, tuning, penalised_rows(x, x, tuning), penalised_rows(x, at, tuning)
     for df in (2, 5, 8):
-        yield "polynomial", {}, df, df - 1, polynomial_matrix(x, df)
+        yield "polynomial", {}, df, df - 1, polynomial_rows(x, x, df), polynomial_rows(x, at, df)
     for options, dfs in (
         ({}, (4, 6, 9)),
         ({"degree": 1}, (3, 6)),
@@ -158,17 +222,17 @@ def cases(name, x):
     ):
         for df in dfs:
             degree, natural = options.get("degree", 3), options.get("natural", False)
-            s = regression_matrix(x, df, degree, options.get("knots", "quantiles"), natural)
-            yield "regression-spline", options, df, df - (2 if natural else degree + 1), s
+            make = lambda t: regression_rows(x, t, df, degree, options.get("knots", "quantiles"), natural)
+            yield "regression-spline", options, df, df - (2 if natural else degree + 1), make(x), make(at)
     gap = np.max(np.diff(np.sort(x)))
     for kernel in ("gaussian", "epanechnikov", "biweight", "tricube"):
         # A compact window must reach over the largest gap.
         least = np.log(span * 2e-3) if kernel == "gaussian" else np.log(gap * 1.2)
-        make = lambda h: local_matrix(x, kernel, 0, "bandwidth", h)
+        make = lambda h, t=x: local_rows(x, t, kernel, 0, "bandwidth", h)
         for df in (3, 5.5):
             if df < np.trace(make(np.exp(least))):
                 tuning = solve(make, df, least, np.log(span * 20))
-                yield "kernel", {"kernel": kernel}, df, tuning, make(tuning)
+                yield "kernel", {"kernel": kernel}, df, tuning, make(tuning), make(tuning, at)
     for kernel, degree, width in (
         ("tricube", 1, "neighbours"),
         ("tricube", 2, "neighbours"),
@@ -177,7 +241,7 @@ def cases(name, x):
         ("gaussian", 2, "bandwidth"),
         ("biweight", 1, "bandwidth"),
     ):
-        make = lambda h: local_matrix(x, kernel, degree, width, h)
+        make = lambda h, t=x: local_rows(x, t, kernel, degree, width, h)
         if width == "neighbours":
             lo, hi = np.log(0.3), 0.0
         elif kernel == "gaussian":
@@ -187,10 +251,11 @@ def cases(name, x):
         for df in (3.6, 5):
             if np.trace(make(np.exp(hi))) < df < np.trace(make(np.exp(lo))):
                 tuning = solve(make, df, lo, hi)
-                yield "local", {"kernel": kernel, "degree": degree, "width": width}, df, tuning, make(tuning)
+                options = {"kernel": kernel, "degree": degree, "width": width}
+                yield "local", options, df, tuning, make(tuning), make(tuning, at)
 
 
-def reference(family, options, df, tuning, s, y):
+def reference(family, options, df, tuning, s, rows, x, y):
     n, t = len(y), np.trace(s)
     level = y.mean()  # every family reproduces constants; this keeps digits
     fitted = level + s @ (y - level)
@@ -210,14 +275,16 @@ def reference(family, options, df, tuning, s, y):
         "aicc": np.log(rss / n) + 1 + 2 * (t + 1) / (n - t - 2),
         "fitted": list(fitted),
         "leverage": list(np.diag(s)),
+        "at": list(points(x)),
+        "predicted": [None if np.isnan(v) else v for v in level + rows @ (y - level)],
     }
 
 
 def everything():
     found = []
     for name, (x, y) in data_sets().items():
-        for family, options, df, tuning, s in cases(name, x):
-            found.append({"data": name + ".csv", **reference(family, options, df, tuning, s, y)})
+        for case in cases(x):
+            found.append({"data": name + ".csv", **reference(*case, x, y)})
     return found
 
 
@@ -227,14 +294,12 @@ def write():
             out = csv.writer(f, lineterminator="\n")
             out.writerow(["x", "y"])
             out.writerows([repr(float(a)), repr(float(b))] for a, b in zip(x, y))
-    text = {
-        "source": "dense computations from the definitions; see make.py",
-        "versions": {"python": sys.version.split()[0], "numpy": np.__version__, "scipy": scipy.__version__},
-        "cases": everything(),
-    }
-    with open(HERE / "references.json", "w") as f:
-        json.dump(text, f, indent=0, default=float)
-        f.write("\n")
+    versions = {"python": sys.version.split()[0], "numpy": np.__version__, "scipy": scipy.__version__}
+    with open(HERE / "references.json", "w") as f:  # a case per line
+        f.write('{"source": "dense computations from the definitions; see make.py",\n')
+        f.write('"versions": ' + json.dumps(versions) + ',\n"cases": [\n')
+        f.write(",\n".join(json.dumps(case, default=float) for case in everything()))
+        f.write("\n]}\n")
 
 
 def check():
@@ -243,8 +308,8 @@ def check():
     assert len(kept) == len(fresh), (len(kept), len(fresh))
     worst = 0.0
     for a, b in zip(kept, fresh):
-        for key in ("tr_s", "tr_sts", "rss", "gcv", "loocv", "aicc", "fitted", "leverage"):
-            u, v = np.atleast_1d(a[key]), np.atleast_1d(b[key])
+        for key in ("tr_s", "tr_sts", "rss", "gcv", "loocv", "aicc", "fitted", "leverage", "predicted"):
+            u, v = (np.nan_to_num(np.atleast_1d(c[key]).astype(float)) for c in (a, b))
             worst = max(worst, float(np.max(np.abs(u - v) / np.maximum(1, np.abs(u)))))
     print(f"{len(kept)} cases, worst difference {worst:.2g}")
     if worst > 1e-10:
