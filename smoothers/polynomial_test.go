@@ -204,6 +204,33 @@ func TestPolynomialHoldsBeyondTheData(t *testing.T) {
 	}
 }
 
+// An observation far out nearly fits itself. For a straight line 1 − h_i is the determinant
+// of XᵀX without observation i over that with it, which has no cancellation.
+func TestPolynomialRemainderKeepsItsDigits(t *testing.T) {
+	x := []float64{0, 0.1, 0.2, 0.3, 0.4, 0.5, 0.6, 0.7, 0.8, 0.9, 1e5}
+	det := func(x []float64) float64 {
+		n, mean, sxx := float64(len(x)), 0.0, 0.0
+		for _, v := range x {
+			mean += v / n
+		}
+		for _, v := range x {
+			sxx += (v - mean) * (v - mean)
+		}
+		return n * sxx
+	}
+	want := det(x[:10]) / det(x) // 7.5e-11
+	r := NewPolynomial().On(x, nil).AtDF([]float64{2, 11})
+	// Rounding of 1e-16 in a vector of length √want; 1 − h would be off by 1e-6.
+	if got := r[0].Remainder[10]; math.Abs(got/want-1) > 1e-10 {
+		t.Errorf("remainder %.15g, want %.15g", got, want)
+	}
+	for i, v := range r[1].Remainder {
+		if r[1].Status == OK && v != 0 {
+			t.Errorf("remainder %d of an interpolating polynomial is %g", i, v)
+		}
+	}
+}
+
 func BenchmarkPolynomial(b *testing.B) {
 	dfs := []float64{2, 3, 4, 5, 6, 7, 8, 9, 10, 11, 12, 13, 14, 15, 16}
 	for _, n := range []int{30, 300, 3000} {
