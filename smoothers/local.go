@@ -96,8 +96,8 @@ type localLadder struct {
 	fit   localFit // works for the ladder while it is laid
 	floor float64  // the width must exceed this: a bandwidth, or a number of neighbours
 	grid  traceGrid
-	store []float64 // where a rung's rows grow before they are kept
-	maker panelMaker
+	store []float64  // where a rung's rows grow before they are kept
+	maker panelMaker // lays out panels to be kept
 }
 
 // layLocal completes l, which holds the options, on a design.
@@ -105,9 +105,9 @@ func layLocal(x []float64, mem *Arena, l localLadder) *localLadder {
 	l.tied = gather(x, mem)
 	l.mem = mem
 	l.floor = l.leastWidth()
-	lad := &l
-	lad.fit = lad.fitOn(mem.floats(lad.scratch()))
-	return lad
+	laid := &l
+	laid.fit = laid.fitOn(mem.floats(laid.scratch()))
+	return laid
 }
 
 // extent returns the range of the data.

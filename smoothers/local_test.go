@@ -109,7 +109,7 @@ func TestLocalEqualsDenseReference(t *testing.T) {
 	for design, x := range localDesigns() {
 		for name, s := range allLocal() {
 			t.Run(design+"/"+name, func(t *testing.T) {
-				rungs := s.On(x, nil).AtDF([]float64{2.2, 3, 3.5, 5, 8, float64(len(x)) / 2})
+				rungs := s.On(x, nil).AtDF([]float64{2.2, 3.5, 5, float64(len(x)) / 2})
 				for i := range rungs {
 					if rungs[i].Status == OK {
 						compareDense(t, s, x, &rungs[i])

@@ -7,7 +7,7 @@ import "math"
 // three ways, each exact to rounding whatever the weights and spacings.
 //
 // Gaussian weights are not truncated, and what they leave singular in floating
-// point is told apart again (see ladle).
+// point is told apart again (see weighAll).
 //
 // p1 is taken about the x nearest to the weighted mean and then centred once more:
 // differences of nearby x are exact, and that x is within one standard deviation.
@@ -18,7 +18,7 @@ import "math"
 func (f *localFit) careful(g *gaze, t float64, self int) bool {
 	if !f.l.shape.compact() {
 		f.lo, f.hi = 0, len(f.l.z)
-		if !f.ladle(g, t, self) {
+		if !f.weighAll(g, t, self) {
 			return false
 		}
 	}
@@ -115,13 +115,13 @@ func (f *localFit) closest(v []float64, at float64) int {
 	return best
 }
 
-// ladle fills u, w and a with gaussian weights over all distinct x, relative to the
+// weighAll fills u, w and a with gaussian weights over all distinct x, relative to the
 // nearest point not left out, so that degree + 1 of them never vanish. In order of
 // distance, a step of more than clearDepth between the log weights decides the
 // fit as if it were infinite: the points before it are met first, the ones after
 // it settle only what is then still free. Such a step can be shortened to clearDepth
 // without changing a digit, which keeps the weights after it above underflow.
-func (f *localFit) ladle(g *gaze, t float64, self int) bool {
+func (f *localFit) weighAll(g *gaze, t float64, self int) bool {
 	z := f.l.z
 	near := f.nearest(g.near, t, self)
 	if near < 0 {

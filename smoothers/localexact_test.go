@@ -246,7 +246,7 @@ func compareExact(t *testing.T, s Smoother, x []float64, r *Rung) {
 		fit := newExactFit(s, x, r.Tuning, v)
 		row := fit.row(-1)
 		if row == nil {
-			continue // the limit of such weights is taken, see ladle
+			continue // the limit of such weights is taken, see weighAll
 		}
 		var norm, value, size float64
 		for j, w := range row {
@@ -269,6 +269,8 @@ func compareExact(t *testing.T, s Smoother, x []float64, r *Rung) {
 	if !exactSlow {
 		at = at[20:32]
 	}
+	lo, span := x[0], x[len(x)-1]-x[0]
+	at = append(append([]float64{lo - 50*span}, at...), lo+1e4*span)
 	got := make([]float64, len(at))
 	f.Curve.At(got, at)
 	for i, v := range at {

@@ -110,8 +110,8 @@ func (k shape) powers(squared bool) (even, odd []power) {
 	return p[0], p[1]
 }
 
-// terms1 returns the number of coefficients of a polynomial with these powers.
-func terms1(p []power) int {
+// coefficients returns the number of coefficients of a polynomial with these powers.
+func coefficients(p []power) int {
 	if len(p) == 0 {
 		return 0
 	}
@@ -126,7 +126,7 @@ func (s *localSums) polynomial(t float64, slope bool) bool {
 	tau, h := (t-s.c)/s.unit, s.gaze.h/s.unit
 	even, odd := s.l.shape.powers(s.squared)
 	var ce, co [19]float64 // coefficients of v^k, for all points and with the sign
-	ne, no := terms1(even), terms1(odd)
+	ne, no := coefficients(even), coefficients(odd)
 	expand(ce[:ne], even, tau, h, false)
 	expand(co[:no], odd, tau, h, false)
 	ce[0]++

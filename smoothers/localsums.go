@@ -65,7 +65,7 @@ func (s *localSums) keep() {
 	terms := seriesMost
 	if s.l.shape.compact() {
 		even, odd := s.l.shape.powers(s.squared)
-		terms = max(terms1(even), terms1(odd))
+		terms = max(coefficients(even), coefficients(odd))
 	}
 	s.tops[0] = terms + 2*s.l.degree
 	if s.l.shape == gaussian {
