@@ -21,9 +21,6 @@ type curveFilter struct {
 	gap    []float64
 }
 
-// filterRoom is what a curveFilter keeps per knot.
-const filterRoom = 8
-
 // info is Λ = [a −b; −b c] and its determinant d.
 type info struct{ a, b, c, d float64 }
 
