@@ -7,7 +7,7 @@ import (
 )
 
 // TestHostileFilesEndSoon gives the parser the most of what its size limit lets
-// through. The time is some ten times what an idle machine needs, so that a busy one
+// through. The time is thirty times what an idle machine needs, so that a busy one
 // does not fail; a quadratic walk takes minutes.
 func TestHostileFilesEndSoon(t *testing.T) {
 	fill := func(part string) string { return strings.Repeat(part, mostBytes/len(part)) }
@@ -38,7 +38,7 @@ func TestHostileFilesEndSoon(t *testing.T) {
 			start := time.Now()
 			_, faults := Parse("a.toml", []byte(src[:min(len(src), mostBytes)]), vocabulary(""))
 			text := faults.Error()
-			if took := time.Since(start); took > 10*time.Second {
+			if took := time.Since(start); took > 30*time.Second {
 				t.Errorf("took %v", took)
 			} else {
 				t.Logf("took %v for %d faults", took, len(faults))
