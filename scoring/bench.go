@@ -114,6 +114,7 @@ func (b *Bench) layLadders(x []float64) {
 		return
 	}
 	b.laid = b.cell.FixedDesign()
+	b.arena.Lasting = b.laid
 	b.arena.Reset()
 	for i, e := range b.contest.Entrants {
 		b.rungs[i] = e.Smoother.On(x, &b.arena).AtDF(e.DF)
