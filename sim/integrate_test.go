@@ -68,3 +68,19 @@ func TestJumpsAreSeenWhereverTheyLie(t *testing.T) {
 		}
 	}
 }
+
+// A curve may have no values beside its domain, and rounding must not ask for any.
+func TestPointsStayWithinTheInterval(t *testing.T) {
+	for k := range 300 {
+		lo := math.Sqrt(float64(k)) / 7
+		hi := lo + math.Exp(float64(k%37)-30)
+		if _, err := integrate(vector(func(x float64) float64 {
+			if x < lo || x > hi {
+				return math.NaN()
+			}
+			return 1
+		}), lo, hi); err != nil {
+			t.Errorf("on [%v, %v]: %v", lo, hi, err)
+		}
+	}
+}

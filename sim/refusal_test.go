@@ -47,6 +47,7 @@ func refusals(t *testing.T) []refusal {
 		{"ratio", nil, nil, noise(&ContaminatedNoise{Fraction: 0.1, Ratio: 0.5}), NoisePart, "ratio = 0.5"},
 		{"shape", nil, nil, noise(&SkewedNoise{}), NoisePart, "shape = 0"},
 		{"negative scale", nil, nil, scale("x - 0.5"), NoisePart, "nowhere negative"},
+		{"scale negative between probes", nil, nil, scale("abs(x - 1228.5/4096) - 1e-4"), NoisePart, "nowhere negative"},
 		{"zero scale", nil, nil, scale("0*x"), NoisePart, "not zero throughout"},
 		{"infinite scale", nil, nil, scale("1/x"), NoisePart, "+inf at x = 0"},
 		{"scale of no number", nil, nil, scale("sqrt(x - 0.5)"), NoisePart, "not a number at x = 0"},

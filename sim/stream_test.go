@@ -3,6 +3,7 @@ package sim
 import (
 	"fmt"
 	"math"
+	"slices"
 	"testing"
 
 	"gonum.org/v1/gonum/stat"
@@ -128,6 +129,32 @@ func TestZigguratsHaveTheirDensity(t *testing.T) {
 	}
 }
 
+// Draws of the tails alone, which are too rare to be seen in all draws, against the
+// tails' own distributions; limits as for designs.
+func TestTailsOfZigguratsHaveTheirDistribution(t *testing.T) {
+	const m = 100_000
+	var s Stream
+	s.set(8, "tail", 0, "test")
+	upper := func(x float64) float64 { return math.Erfc(x / math.Sqrt2) }
+	for name, c := range map[string]struct {
+		z     *ziggurat
+		start float64
+		cdf   func(x float64) float64
+	}{
+		"normal":      {normalLayers, normalTail, func(x float64) float64 { return 1 - upper(x)/upper(normalTail) }},
+		"exponential": {exponentialLayers, exponentialTail, func(x float64) float64 { return 1 - math.Exp(exponentialTail-x) }},
+	} {
+		e := make([]float64, m)
+		for i := range e {
+			e[i], s.source = c.z.tail(c.start, s.source)
+		}
+		slices.Sort(e)
+		if d := distance(e, c.cdf); d > 2.9/math.Sqrt(m) {
+			t.Errorf("%s: distance %.4f, limit %.4f", name, d, 2.9/math.Sqrt(m))
+		}
+	}
+}
+
 // Order statistics of uniforms: the k-th of n is beta(k, n+1−k). Means within 5
 // standard errors, and spacings independent of their place.
 func TestAscendingUniformsAreOrderStatistics(t *testing.T) {
@@ -175,10 +202,14 @@ func TestBelowIsEven(t *testing.T) {
 			t.Errorf("of %d: %v", n, counts[:min(n, 10)])
 		}
 	}
-	for range 1000 { // where two thirds of the products are rejected or close to it
-		if k := s.below(math.MaxInt64/3*2 + 1); k < 0 {
-			t.Fatalf("drew %d", k)
-		}
+	// Of 2⁶⁴ numbers, 8/3 fall on each of 3·2⁶¹: without rejection, on every third 2 and
+	// on the others 3.
+	thirds := make([]float64, 3)
+	for range 30_000 {
+		thirds[s.below(3<<61)%3]++
+	}
+	if stat.ChiSquare(thirds, []float64{10_000, 10_000, 10_000}) > (distuv.ChiSquared{K: 2}).Quantile(1-1e-6) {
+		t.Errorf("of 3·2⁶¹, by remainder: %v", thirds)
 	}
 }
 

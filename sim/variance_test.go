@@ -128,6 +128,29 @@ func TestNoiseVarianceIsExact(t *testing.T) {
 	}
 }
 
+// Integrals are kept with the truth; each must be kept for its own law and scale.
+func TestIntegralsAreKeptApart(t *testing.T) {
+	truth := curve(t, "x", 0, 1)
+	for range 2 {
+		for _, c := range []struct {
+			law  DesignLaw
+			want float64
+		}{
+			{&UniformDesign{}, 1.0 / 12}, {&BetaDesign{A: 2, B: 2}, 1.0 / 20}, {&BetaDesign{A: 2, B: 1}, 1.0 / 18},
+		} {
+			if got := cellOf(t, truth, c.law, ratioOf1(), 10, 10).NoiseVariance; math.Abs(got-c.want) > 1e-12 {
+				t.Errorf("signal over %s: %v, want %v", c.law.describe(), got, c.want)
+			}
+		}
+		for scale, want := range map[string]float64{"x": 1.0 / 3, "2*x": 4.0 / 3, "sqrt(x)": 1.0 / 2} {
+			noise := &Noise{Law: &NormalNoise{}, SD: number(1), Scale: expression(t, scale)}
+			if got := cellOf(t, truth, &UniformDesign{}, noise, 10, 10).NoiseVariance; math.Abs(got-want) > 1e-12 {
+				t.Errorf("scale %s: %v, want %v", scale, got, want)
+			}
+		}
+	}
+}
+
 // The noise variance that a cell states is the mean of ε² that it draws: held-out
 // sets with a scale over laws of all kinds, limits of 5 standard errors over 100
 // replicates, false alarm 1e-5.

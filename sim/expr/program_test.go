@@ -18,9 +18,9 @@ func calls(e *Expression, name string) int {
 }
 
 func TestCommonPartsAreWorkedOnce(t *testing.T) {
-	e := compile(t, "exp(-2*x)*sin(x) + exp(-2*x)*cos(x) + exp((-2)*x)")
-	if n := calls(e, "exp"); n != 1 {
-		t.Errorf("%d calls of exp, want 1", n)
+	e := compile(t, "exp(-2*x)*sin(x) + exp(-2*x)*cos(x) + exp((-2)*x) + exp(-2*x + pi) + exp(-2*x + 3.141592653589793)")
+	if n := calls(e, "exp"); n != 2 { // pi is its number
+		t.Errorf("%d calls of exp, want 2", n)
 	}
 }
 

@@ -55,6 +55,7 @@ func TestValuesFollowTheRulesOfAlgebra(t *testing.T) {
 		{"pow(2, 3) + pow(x, 3)", 2, 16},
 		{"x^0.5", 9, 3}, {"x^0", 0, 1}, {"x^1", -7, -7},
 		{"x^2", -7, 49}, {"x^3", -7, -343}, {"x^16", 2, 65536}, {"x^17", 2, 131072}, {"x^13", 1.1, math.Pow(1.1, 13)},
+		{"sin(x)*sin(x) + cos(x)*cos(x) + exp(x)*exp(x)", 0.7, 1 + math.Exp(1.4)}, // operands used twice
 		{"phi(0)", 0, 1 / math.Sqrt(2*math.Pi)},
 		{"Phi(x)", 1.959963984540054, 0.975},
 		{"1e2 + 1.5e-1 + .5 + 2.", 0, 102.65},
