@@ -35,7 +35,7 @@ func (l *localLadder) root(df float64, i int) float64 {
 	width := g.width[i]
 	for try := range 80 {
 		v := hermiteRoot(a, b)
-		if try > 4 && try%3 == 0 {
+		if try > 4 && try%3 == 0 || !(v > b.v && v < a.v) { // or tr S has met low or high, and f is no number
 			v = (a.v + b.v) / 2
 		}
 		width = math.Exp(v)
