@@ -80,7 +80,7 @@ const (
 func (l *localLadder) lay(r *Rung, s *localRung) {
 	n := len(l.x)
 	*s = localRung{l: l, tuning: r.Tuning}
-	r.solver = s
+	r.solver, r.Lines = s, l.degree > 0
 	r.Leverage, r.RowNorm2, r.Remainder = l.mem.floats(n), l.mem.floats(n), l.mem.floats(n)
 	if l.wide(r.Tuning) && l.window(r.Tuning)*float64(len(l.z)) > rowsKept {
 		l.layBySums(r)
@@ -246,4 +246,33 @@ func (s *localRung) solve(y []float64, f *Fit) {
 		}
 	}
 	l.spread(f.Fitted, f.Fitted[:m])
+}
+
+// matrix implements rower, from the rows if they are kept.
+func (s *localRung) matrix(dst []float64) bool {
+	if s.rows.end == nil {
+		return false
+	}
+	l := s.l
+	n, from := len(l.x), 0
+	clear(dst)
+	first := 0 // observation
+	for i, end := range s.rows.end {
+		row := dst[first*n : (first+1)*n]
+		at := 0
+		for _, c := range l.count[:int(s.rows.lo[i])] {
+			at += int(c)
+		}
+		for j, w := range s.rows.weight[from:int(end)] {
+			for range int(l.count[int(s.rows.lo[i])+j]) {
+				row[at] = w
+				at++
+			}
+		}
+		for k := 1; k < int(l.count[i]); k++ {
+			copy(dst[(first+k)*n:(first+k+1)*n], row)
+		}
+		first, from = first+int(l.count[i]), int(end)
+	}
+	return true
 }

@@ -36,7 +36,7 @@ func (l *penaltyLadder) lay(r *Rung, s *penaltySolver, lambda float64) {
 		*r = Rung{DF: r.DF, Status: RankDeficient, Note: noteDigits}
 		return
 	}
-	r.Tuning = lambda
+	r.Tuning, r.Form, r.Lines = lambda, Ridge, true
 	r.DFResidual += float64(n - l.rank)
 	r.HasLogDet = lambda > 0
 	r.Leverage, r.RowNorm2, r.Remainder = l.mem.floats(n), l.mem.floats(n), l.mem.floats(n)

@@ -162,6 +162,7 @@ func (l *knotLadder) lay(r *Rung, s *knotSolver) {
 	l.design.share(leverage, rest)
 	r.Tuning, r.TrS, r.TrSTS, r.DFResidual = float64(interior), r.DF, r.DF, float64(n)-r.DF
 	r.Leverage, r.RowNorm2, r.Remainder = leverage, leverage, rest // S is a projection
+	r.Form, r.Lines = Projection, df >= 2 && degree >= 1
 	r.solver = s
 }
 

@@ -50,6 +50,9 @@ type Rung struct {
 	LogDet    float64
 	HasLogDet bool
 
+	Form  Form // what is known of S
+	Lines bool // whether S leaves straight lines alone
+
 	solver solver // nil unless Status is OK
 }
 
@@ -60,8 +63,11 @@ type solver interface {
 }
 
 // SolveBy sets how a y is fitted on the rung, for families outside this package: solve
-// must fill f.Fitted, which has length n already, set f.Curve, and leave y alone.
-func (r *Rung) SolveBy(solve func(y []float64, f *Fit)) { r.solver = solveFunc(solve) }
+// must fill f.Fitted, which has length n already, set f.Curve, and leave y alone. Nothing
+// being known of such an S, the rung's form becomes General.
+func (r *Rung) SolveBy(solve func(y []float64, f *Fit)) {
+	r.solver, r.Form = solveFunc(solve), General
+}
 
 // A solveFunc is a solver that is a function.
 type solveFunc func(y []float64, f *Fit)

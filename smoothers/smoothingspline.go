@@ -68,6 +68,9 @@ type splineFilter interface {
 	// gains writes what fitting at q takes of x, and returns log det⁺(I − S), or
 	// 0 where the filter has none.
 	gains(q float64, gains []float64) (logDet float64)
+	// determinantRates returns the third and the fourth derivative of log det⁺(I − S)
+	// by log λ.
+	determinantRates(q float64) (third, fourth float64)
 	// smooth writes g and its derivative (0 for order 1) at the knots, the latter
 	// by x ÷ range, from the sums of the readings at each knot. work has length 2m.
 	smooth(gains, sums, value, slope, work []float64)

@@ -115,7 +115,7 @@ func (l *splineLadder) spread(theta float64) {
 // lay fills in the rung at θ, which is −Inf for interpolation.
 func (l *splineLadder) lay(r *Rung, s *splineSolver, theta float64) {
 	n := len(l.design.x)
-	r.Status = OK
+	r.Status, r.Form, r.Lines = OK, Ridge, l.order == 2
 	r.TrS, r.TrSTS = l.trace(theta)
 	r.TrSTS += r.TrS
 	r.DFResidual = float64(n) - 2*r.TrS + r.TrSTS

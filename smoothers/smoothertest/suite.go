@@ -54,6 +54,7 @@ func checks() []check {
 		{"df-attained", "the claimed df exist on even x, or the family is of no use", dfAttained},
 		{"figures-add-up", "criteria take traces and leverages from the same S", figuresAddUp},
 		{"matrix", "what a rung states of S must be what Fit does to y", matrixAgrees},
+		{"forms", "tests take short cuts where S is a projection or a ridge", forms},
 		{"linear", "all theory of df rests on ŷ = S y", linear},
 		{"constants", "S 1 = 1: the level of y must not matter", constants},
 		{"lines", "families that claim it pass straight lines through unchanged", lines},

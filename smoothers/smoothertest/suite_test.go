@@ -165,6 +165,7 @@ func bentSmoothers() map[string]bent {
 				v[0] = last
 			}
 		}},
+		"forms": {rung: func(_ int, _ []float64, _ *smoothers.Arena, r *smoothers.Rung) { r.Form = smoothers.Projection }},
 		"linear": {fit: tweak(func(y, fitted []float64) {
 			for i := range fitted {
 				fitted[i] = min(max(fitted[i], slices.Min(y)+0.5), slices.Max(y)-0.5)
