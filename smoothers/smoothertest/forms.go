@@ -25,8 +25,10 @@ func forms(tr *trial, r *report) {
 			same(r, c, k, "S² is S", product(s, s), s)
 		}
 		if rung.Lines {
-			if d, i := apart(fitted(rung, c.x), c.x); !(d <= rounding*(math.Abs(c.x[0])+math.Abs(c.x[len(c.x)-1]))) {
-				r.faultf("%s: S leaves straight lines alone, yet moves x[%d] by %.2g", c.at(k), i, d)
+			from, span := c.x[0], c.x[len(c.x)-1]-c.x[0]
+			line := transformed(c.x, func(v float64) float64 { return (v - from) / span })
+			if d, i := apart(fitted(rung, line), line); !(d <= rounding) {
+				r.faultf("%s: S leaves straight lines alone, yet moves point %d of one by %.2g", c.at(k), i, d)
 			}
 		}
 	})
