@@ -19,8 +19,9 @@ import (
 
 // A Part is what one unit of work yields.
 type Part struct {
-	Fits  []Fit
-	Picks []Pick
+	Fits    []Fit
+	Picks   []Pick
+	Moments []Moment
 }
 
 // A BrokenPartError says that a part file is not what was written. The unit is to
@@ -33,9 +34,9 @@ type BrokenPartError struct {
 func (e *BrokenPartError) Error() string { return fmt.Sprintf("%s: broken part: %s", e.Path, e.Reason) }
 
 // A part file is partMagic, the SHA-256 hash of all that follows, and, compressed by
-// zstd, the length of the fits and the two tables as Arrow streams. Parquet would
-// take thirty times as long for so few rows.
-const partMagic = "bendtest part 1\n"
+// zstd, the three tables as Arrow streams, each after its length. Parquet would take
+// thirty times as long for so few rows.
+const partMagic = "bendtest part 2\n"
 
 const partHead = len(partMagic) + sha256.Size
 
@@ -44,16 +45,25 @@ const maxPart = 1 << 32
 
 // encode returns the bytes of a part file.
 func (p *Part) encode() ([]byte, error) {
-	var fits, picks bytes.Buffer
-	if err := writeStream(Fits, &fits, p.Fits); err != nil {
-		return nil, err
+	var plain []byte
+	add := func(stream func(io.Writer) error) error {
+		var b bytes.Buffer
+		if err := stream(&b); err != nil {
+			return err
+		}
+		plain = binary.BigEndian.AppendUint64(plain, uint64(b.Len()))
+		plain = append(plain, b.Bytes()...)
+		return nil
 	}
-	if err := writeStream(Picks, &picks, p.Picks); err != nil {
-		return nil, err
+	for _, stream := range []func(io.Writer) error{
+		func(w io.Writer) error { return writeStream(Fits, w, p.Fits) },
+		func(w io.Writer) error { return writeStream(Picks, w, p.Picks) },
+		func(w io.Writer) error { return writeStream(moments, w, p.Moments) },
+	} {
+		if err := add(stream); err != nil {
+			return nil, err
+		}
 	}
-	plain := binary.BigEndian.AppendUint64(nil, uint64(fits.Len()))
-	plain = append(plain, fits.Bytes()...)
-	plain = append(plain, picks.Bytes()...)
 	packer, err := zstd.NewWriter(nil, zstd.WithEncoderLevel(zstd.SpeedFastest), zstd.WithEncoderConcurrency(1))
 	if err != nil {
 		return nil, err
@@ -105,29 +115,35 @@ func readStream[R any](t *Table[R], data []byte, yield func(*R) error) error {
 	return in.Err()
 }
 
-// openPart checks the bytes of a part file and returns its two streams.
-func openPart(data []byte) (fits, picks []byte, err error) {
+// streams are the three Arrow streams of a part.
+type streams [3][]byte
+
+// openPart checks the bytes of a part file and returns its streams.
+func openPart(data []byte) (found streams, err error) {
 	if len(data) < partHead || string(data[:len(partMagic)]) != partMagic {
-		return nil, nil, errors.New("it is cut short or not a part of this version")
+		return found, errors.New("it is cut short or not a part of this version")
 	}
 	body := data[partHead:]
 	if sum := sha256.Sum256(body); !bytes.Equal(sum[:], data[len(partMagic):partHead]) {
-		return nil, nil, errors.New("its checksum is wrong")
+		return found, errors.New("its checksum is wrong")
 	}
 	unpacker, err := zstd.NewReader(nil, zstd.WithDecoderMaxMemory(maxPart), zstd.WithDecoderConcurrency(1))
 	if err != nil {
-		return nil, nil, err
+		return found, err
 	}
 	defer unpacker.Close()
 	plain, err := unpacker.DecodeAll(body, nil)
 	if err != nil {
-		return nil, nil, fmt.Errorf("it does not unpack: %w", err)
+		return found, fmt.Errorf("it does not unpack: %w", err)
 	}
-	if len(plain) < 8 || binary.BigEndian.Uint64(plain) > uint64(len(plain)-8) {
-		return nil, nil, errors.New("its lengths do not add up")
+	for i := range found {
+		if len(plain) < 8 || binary.BigEndian.Uint64(plain) > uint64(len(plain)-8) {
+			return found, errors.New("its lengths do not add up")
+		}
+		end := 8 + binary.BigEndian.Uint64(plain)
+		found[i], plain = plain[8:end], plain[end:]
 	}
-	size := binary.BigEndian.Uint64(plain)
-	return plain[8 : 8+size], plain[8+size:], nil
+	return found, nil
 }
 
 // partPath is where the part with a key lies.
@@ -149,7 +165,7 @@ func (d *Dir) WritePart(key string, p *Part) error {
 // CheckPart reports whether the part with a key is there and intact. A broken part
 // is a *BrokenPartError.
 func (d *Dir) CheckPart(key string) (bool, error) {
-	_, _, err := d.loadPart(key)
+	_, err := d.loadPart(key)
 	if errors.Is(err, fs.ErrNotExist) {
 		return false, nil
 	}
@@ -157,27 +173,46 @@ func (d *Dir) CheckPart(key string) (bool, error) {
 }
 
 // loadPart reads and checks a part file.
-func (d *Dir) loadPart(key string) (fits, picks []byte, err error) {
+func (d *Dir) loadPart(key string) (streams, error) {
 	path := d.partPath(key)
 	data, err := os.ReadFile(path)
 	if err != nil {
-		return nil, nil, err
+		return streams{}, err
 	}
-	if fits, picks, err = openPart(data); err != nil {
-		return nil, nil, &BrokenPartError{path, err.Error()}
+	found, err := openPart(data)
+	if err != nil {
+		return streams{}, &BrokenPartError{path, err.Error()}
 	}
-	return fits, picks, nil
+	return found, nil
 }
 
-// ReadPart calls the functions with the rows of the part with a key, in order. A
-// row is overwritten by the next.
-func (d *Dir) ReadPart(key string, fit func(*Fit) error, pick func(*Pick) error) error {
-	fits, picks, err := d.loadPart(key)
+// A PartReader takes the rows of parts, in order; a row is overwritten by the next. Rows
+// that no function is there for are not unpacked.
+type PartReader struct {
+	Fit    func(*Fit) error
+	Pick   func(*Pick) error
+	Moment func(*Moment) error
+}
+
+// ReadPart reads the part with a key.
+func (d *Dir) ReadPart(key string, to PartReader) error {
+	found, err := d.loadPart(key)
 	if err != nil {
 		return err
 	}
-	if err := readStream(Fits, fits, fit); err != nil {
+	if err := readIf(Fits, found[0], to.Fit); err != nil {
 		return err
 	}
-	return readStream(Picks, picks, pick)
+	if err := readIf(Picks, found[1], to.Pick); err != nil {
+		return err
+	}
+	return readIf(moments, found[2], to.Moment)
+}
+
+// readIf reads a stream if there is somebody to take its rows.
+func readIf[R any](t *Table[R], data []byte, yield func(*R) error) error {
+	if yield == nil {
+		return nil
+	}
+	return readStream(t, data, yield)
 }

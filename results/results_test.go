@@ -130,7 +130,7 @@ func TestEveryColumnIsDocumented(t *testing.T) {
 
 func TestPartsSurviveAndBreakingThemIsFound(t *testing.T) {
 	d := newDir(t)
-	part := &Part{Fits: someFits(40), Picks: somePicks(9)}
+	part := &Part{Fits: someFits(40), Picks: somePicks(9), Moments: []Moment{{Slot: 3, Count: 2, Mean: 0.5, M2: 7}}}
 	if ok, err := d.CheckPart("k"); ok || err != nil {
 		t.Fatalf("a part that is not there: %v, %v", ok, err)
 	}
@@ -138,10 +138,12 @@ func TestPartsSurviveAndBreakingThemIsFound(t *testing.T) {
 		t.Fatal(err)
 	}
 	var got Part
-	err := d.ReadPart("k",
-		func(f *Fit) error { got.Fits = append(got.Fits, *f); return nil },
-		func(p *Pick) error { got.Picks = append(got.Picks, *p); return nil })
-	if err != nil || !slices.Equal(got.Fits, part.Fits) || !slices.Equal(got.Picks, part.Picks) {
+	err := d.ReadPart("k", PartReader{
+		Fit:    func(f *Fit) error { got.Fits = append(got.Fits, *f); return nil },
+		Pick:   func(p *Pick) error { got.Picks = append(got.Picks, *p); return nil },
+		Moment: func(m *Moment) error { got.Moments = append(got.Moments, *m); return nil },
+	})
+	if err != nil || !slices.Equal(got.Fits, part.Fits) || !slices.Equal(got.Picks, part.Picks) || !slices.Equal(got.Moments, part.Moments) {
 		t.Errorf("part differs after reading (%v)", err)
 	}
 	whole, err := os.ReadFile(d.partPath("k"))

@@ -42,6 +42,8 @@ type Fit struct {
 	TrainMSE, ASETrain,
 	HeldoutMSE, HeldoutNoise,
 	ASEHeldout, ASEInside, ASEOutside Number
+	Coverage, CoverageBayes,
+	LineP Number
 	GCV, LOOCV, KFold, KFoldSE, CP, AIC, AICc, BIC, REML, ML Number
 }
 
@@ -57,6 +59,8 @@ type Pick struct {
 	ASEHeldout Number
 	OracleDF, OracleASE,
 	Regret Number
+	Coverage, CoverageBayes,
+	Criterion Number
 	AtEdge bool
 	Status string
 }
@@ -72,6 +76,80 @@ type Summary struct {
 	Replicates int
 	Failed     int
 	Failure    string
+}
+
+// A Rung is a row of the table rungs: one figure of one rung over the replicates of a
+// cell, whatever the rules pick.
+type Rung struct {
+	Cell       string
+	Smoother   string
+	DF         float64
+	Quantity   string
+	Mean       Number
+	MCSE       Number
+	Replicates int
+}
+
+// A Curve is a row of the table curves: the fitted curves of one rung at one x, over the
+// replicates of a cell.
+type Curve struct {
+	Cell       string
+	Smoother   string
+	DF         float64
+	X          float64
+	Truth      float64
+	Mean       Number
+	Bias2      Number
+	Variance   Number
+	MCSE       Number
+	Replicates int
+}
+
+// A Test is a row of the table tests: how often the straight line was rejected at a rung.
+type Test struct {
+	Cell       string
+	Smoother   string
+	DF         float64
+	Alpha      float64
+	Rejected   int
+	Replicates int
+	Rate       Number
+	Lo, Hi     Number
+	Exact      bool
+}
+
+// An Audit is a row of the table audit: what theory expects of a figure on a fixed design,
+// and what the simulation found.
+type Audit struct {
+	Cell      string
+	Smoother  string
+	DF        float64
+	Quantity  string
+	Expected  Number
+	Simulated Number
+	MCSE      Number
+	Z         Number
+}
+
+// A Choice is a row of the table choices: how often a rule picked a df in a cell.
+type Choice struct {
+	Cell       string
+	Smoother   string
+	Rule       string
+	DF         float64
+	Picked     int
+	Replicates int
+	Rate       Number
+	Lo, Hi     Number
+}
+
+// A Moment is one entry of a part's vector of moments: how often a figure was seen, its
+// mean, and the sum of squared deviations from it. Entries never seen are left out.
+type Moment struct {
+	Slot  int
+	Count int
+	Mean  float64
+	M2    float64
 }
 
 // A Timing is a row of the table timings: how long one unit of work took.

@@ -45,6 +45,9 @@ var Fits = &Table[Fit]{
 		{"ase_heldout", "y²", "average squared error, (1/m) Σ (f̂ − f)² at the held-out x", func(r *Fit) any { return &r.ASEHeldout }},
 		{"ase_inside", "y²", "average squared error over the held-out x within the training range; null if there are none", func(r *Fit) any { return &r.ASEInside }},
 		{"ase_outside", "y²", "average squared error over the held-out x beyond the training range; null if there are none", func(r *Fit) any { return &r.ASEOutside }},
+		{"coverage", "", "share of training x at which the 95 % pointwise band ŷ ± t σ̂ √(SSᵀ)_ii covers f, σ̂² = RSS/df_residual; null where nothing is left to estimate σ", func(r *Fit) any { return &r.Coverage }},
+		{"coverage_bayes", "", "the same with √S_ii in place of √(SSᵀ)_ii; smoothing and penalised splines only", func(r *Fit) any { return &r.CoverageBayes }},
+		{"line_p", "", "p-value of the test of the straight line within this rung; null where the rung is no more flexible or the test is not worked out", func(r *Fit) any { return &r.LineP }},
 		{"gcv", "y²", "(RSS/n)/(1 − t/n)², infinite where t ≥ n", func(r *Fit) any { return &r.GCV }},
 		{"loocv", "y²", "mean of (r_i/(1 − S_ii))²; neighbour widths and quantile knots are held", func(r *Fit) any { return &r.LOOCV }},
 		{"kfold", "y²", "k-fold cross-validation, each fold refitted at the same df, with the study's first k; null without a kfold rule or where a fold cannot be fitted", func(r *Fit) any { return &r.KFold }},
@@ -74,6 +77,9 @@ var Picks = &Table[Pick]{
 		{"oracle_df", "df", "df of the oracle: the rung of this ladder with the smallest ASE in this replicate", func(r *Pick) any { return &r.OracleDF }},
 		{"oracle_ase", "y²", "average squared error of the oracle", func(r *Pick) any { return &r.OracleASE }},
 		{"regret", "ratio", "ASE of the pick ÷ ASE of the oracle", func(r *Pick) any { return &r.Regret }},
+		{"coverage", "", "share of training x at which the pick's 95 % pointwise band covers f", func(r *Pick) any { return &r.Coverage }},
+		{"coverage_bayes", "", "the same with √S_ii in place of √(SSᵀ)_ii; smoothing and penalised splines only", func(r *Pick) any { return &r.CoverageBayes }},
+		{"criterion", "y²", "the rule's own criterion at the pick, for rules whose criterion estimates held-out error: gcv, loocv, kfold, cp", func(r *Pick) any { return &r.Criterion }},
 		{"at_edge", "", "whether the pick is the first or last usable rung of the grid", func(r *Pick) any { return &r.AtEdge }},
 		{"status", "", "ok, or why there is no pick", func(r *Pick) any { return &r.Status }},
 	},
@@ -93,6 +99,102 @@ var Summaries = &Table[Summary]{
 		{"replicates", "", "number of replicates that the figure rests on", func(r *Summary) any { return &r.Replicates }},
 		{"failed", "", "number of replicates without a scored pick, left out of the figure", func(r *Summary) any { return &r.Failed }},
 		{"failure", "", "most frequent status of those replicates, or empty", func(r *Summary) any { return &r.Failure }},
+	},
+}
+
+// Rungs has a row per cell × smoother × df × quantity.
+var Rungs = &Table[Rung]{
+	Name: "rungs",
+	Doc:  "figures of every rung over replicates, whatever the rules pick: training and held-out error, criteria, coverage",
+	columns: []column[Rung]{
+		{"cell", "", "key of the cell", func(r *Rung) any { return &r.Cell }},
+		{"smoother", "", "label of the smoother", func(r *Rung) any { return &r.Smoother }},
+		{"df", "df", "equivalent degrees of freedom asked for", func(r *Rung) any { return &r.DF }},
+		{"quantity", "", "train_mse, ase_train, heldout_same_x, heldout, excess, ase_heldout, gcv, loocv, kfold, cp, each of the last four less the held-out error (…_less_heldout), coverage, coverage_known, coverage_bayes", func(r *Rung) any { return &r.Quantity }},
+		{"mean", "quantity's own", "mean over the replicates in which it is known and finite", func(r *Rung) any { return &r.Mean }},
+		{"mcse", "quantity's own", "its Monte Carlo standard error", func(r *Rung) any { return &r.MCSE }},
+		{"replicates", "", "number of those replicates", func(r *Rung) any { return &r.Replicates }},
+	},
+}
+
+// Curves has a row per cell × smoother × df × x.
+var Curves = &Table[Curve]{
+	Name: "curves",
+	Doc:  "mean, squared bias and variance of the fitted curves over the domain",
+	columns: []column[Curve]{
+		{"cell", "", "key of the cell", func(r *Curve) any { return &r.Cell }},
+		{"smoother", "", "label of the smoother", func(r *Curve) any { return &r.Smoother }},
+		{"df", "df", "equivalent degrees of freedom asked for", func(r *Curve) any { return &r.DF }},
+		{"x", "x", "point of an even grid over the domain, ends included", func(r *Curve) any { return &r.X }},
+		{"truth", "y", "f(x)", func(r *Curve) any { return &r.Truth }},
+		{"mean", "y", "mean of f̂(x) over the replicates in which it is finite", func(r *Curve) any { return &r.Mean }},
+		{"bias2", "y²", "(mean − truth)², of which variance/replicates is Monte Carlo noise", func(r *Curve) any { return &r.Bias2 }},
+		{"variance", "y²", "variance of f̂(x) over replicates, divisor replicates − 1", func(r *Curve) any { return &r.Variance }},
+		{"mcse", "y", "Monte Carlo standard error of the mean", func(r *Curve) any { return &r.MCSE }},
+		{"replicates", "", "number of those replicates", func(r *Curve) any { return &r.Replicates }},
+	},
+}
+
+// Tests has a row per cell × smoother × df × α.
+var Tests = &Table[Test]{
+	Name: "tests",
+	Doc:  "the test of the straight line at every rung: size on straight truths, power on curved ones",
+	columns: []column[Test]{
+		{"cell", "", "key of the cell", func(r *Test) any { return &r.Cell }},
+		{"smoother", "", "label of the smoother", func(r *Test) any { return &r.Smoother }},
+		{"df", "df", "equivalent degrees of freedom of the alternative", func(r *Test) any { return &r.DF }},
+		{"alpha", "", "level of the test", func(r *Test) any { return &r.Alpha }},
+		{"rejected", "", "number of replicates in which the straight line was rejected", func(r *Test) any { return &r.Rejected }},
+		{"replicates", "", "number of replicates with a test; 0 where the rung is no more flexible than the line, or the design is too large for the family's test", func(r *Test) any { return &r.Replicates }},
+		{"rate", "", "rejected ÷ replicates", func(r *Test) any { return &r.Rate }},
+		{"lo", "", "lower end of the exact (Clopper–Pearson) 95 % interval", func(r *Test) any { return &r.Lo }},
+		{"hi", "", "upper end of that interval", func(r *Test) any { return &r.Hi }},
+		{"exact", "", "whether the test keeps its level exactly: nested projections with normal, independent errors of one variance; else the two-moment approximation", func(r *Test) any { return &r.Exact }},
+	},
+}
+
+// Audits has a row per cell with a fixed design × smoother × df × quantity.
+var Audits = &Table[Audit]{
+	Name: "audit",
+	Doc:  "exact expectations on fixed designs of up to 500 observations beside what the simulation found",
+	columns: []column[Audit]{
+		{"cell", "", "key of the cell", func(r *Audit) any { return &r.Cell }},
+		{"smoother", "", "label of the smoother", func(r *Audit) any { return &r.Smoother }},
+		{"df", "df", "equivalent degrees of freedom asked for", func(r *Audit) any { return &r.DF }},
+		{"quantity", "", "train_mse, ase_train, heldout_same_x, heldout, loocv, cp, and under normal errors coverage_known", func(r *Audit) any { return &r.Quantity }},
+		{"expected", "quantity's own", "exact expectation; null where there is none", func(r *Audit) any { return &r.Expected }},
+		{"simulated", "quantity's own", "mean over replicates", func(r *Audit) any { return &r.Simulated }},
+		{"mcse", "quantity's own", "its Monte Carlo standard error", func(r *Audit) any { return &r.MCSE }},
+		{"z", "", "(simulated − expected)/mcse; null where either is missing or mcse is 0", func(r *Audit) any { return &r.Z }},
+	},
+}
+
+// Choices has a row per cell × smoother × rule × df picked.
+var Choices = &Table[Choice]{
+	Name: "choices",
+	Doc:  "how often each rule picked each df",
+	columns: []column[Choice]{
+		{"cell", "", "key of the cell", func(r *Choice) any { return &r.Cell }},
+		{"smoother", "", "label of the smoother", func(r *Choice) any { return &r.Smoother }},
+		{"rule", "", "label of the rule, or oracle", func(r *Choice) any { return &r.Rule }},
+		{"df", "df", "a df that was picked", func(r *Choice) any { return &r.DF }},
+		{"picked", "", "number of replicates in which it was", func(r *Choice) any { return &r.Picked }},
+		{"replicates", "", "number of replicates with a scored pick", func(r *Choice) any { return &r.Replicates }},
+		{"rate", "", "picked ÷ replicates", func(r *Choice) any { return &r.Rate }},
+		{"lo", "", "lower end of the exact (Clopper–Pearson) 95 % interval", func(r *Choice) any { return &r.Lo }},
+		{"hi", "", "upper end of that interval", func(r *Choice) any { return &r.Hi }},
+	},
+}
+
+// moments has a row per entry of a part's vector of moments. It is kept in parts alone.
+var moments = &Table[Moment]{
+	Name: "moments",
+	Doc:  "sums over the replicates of a part",
+	columns: []column[Moment]{
+		{"slot", "", "place in the cell's vector", func(r *Moment) any { return &r.Slot }},
+		{"count", "", "number of replicates that it was seen in", func(r *Moment) any { return &r.Count }},
+		{"mean", "", "its mean over them", func(r *Moment) any { return &r.Mean }},
+		{"m2", "", "sum of squared deviations from the mean", func(r *Moment) any { return &r.M2 }},
 	},
 }
 

@@ -40,6 +40,14 @@ func (c *Contest) folds() []int {
 	return ks
 }
 
+// adjacent reports whether a rule tests rungs against each other.
+func (c *Contest) adjacent() bool {
+	return slices.ContainsFunc(c.Rules, func(r NamedRule) bool {
+		_, ok := r.Rule.(*ByFTest)
+		return ok
+	})
+}
+
 // Oracle is the label of the oracle's row in picks.
 const Oracle = "oracle"
 
@@ -59,7 +67,9 @@ type Bench struct {
 	held    HeldOut
 	trainer trainer
 	folders []*folder
-	rows    Rows
+	tests   []ladderTests // by entrant
+	observer
+	rows Rows
 }
 
 // Rows are the rows of the replicates that a bench has scored.
@@ -72,6 +82,8 @@ type Rows struct {
 func NewBench(key string, cell *sim.Cell, contest *Contest, seed uint64) *Bench {
 	b := &Bench{key: key, cell: cell, contest: contest, seed: seed}
 	b.rungs = make([][]smoothers.Rung, len(contest.Entrants))
+	b.tests = make([]ladderTests, len(contest.Entrants))
+	b.observer = newObserver(cell, contest)
 	for _, k := range contest.folds() {
 		b.folders = append(b.folders, &folder{k: k})
 	}
@@ -85,6 +97,7 @@ func (b *Bench) Rows() *Rows { return &b.rows }
 // Clear forgets the rows, keeping their memory.
 func (b *Bench) Clear() {
 	b.rows.Fits, b.rows.Picks = b.rows.Fits[:0], b.rows.Picks[:0]
+	b.forest.Reset()
 }
 
 // Replicate draws one replicate of the cell and appends its rows.
@@ -102,9 +115,11 @@ func (b *Bench) Score(replicate int, sample *sim.Sample) {
 		f.deal(len(train.X), b.cell.Stream(b.seed, replicate, f.purpose()))
 	}
 	b.layLadders(train.X)
+	b.observer.begin(b.cell, b.seed, replicate, sample)
 	for i := range b.contest.Entrants {
 		b.entrant(i, replicate, train)
 	}
+	b.forest.Add(b.leaf)
 }
 
 // layLadders works out every entrant's rungs on the design x; on a fixed design
@@ -118,6 +133,7 @@ func (b *Bench) layLadders(x []float64) {
 	b.arena.Reset()
 	for i, e := range b.contest.Entrants {
 		b.rungs[i] = e.Smoother.On(x, &b.arena).AtDF(e.DF)
+		b.tests[i].lay(b.rungs[i], x, b.laid, b.contest.adjacent())
 	}
 }
 
@@ -134,15 +150,21 @@ func (b *Bench) entrant(i, replicate int, train *sim.Set) {
 			b.score(&row, train)
 		}
 		b.trainer.step(&path.Steps[j], r, &b.fit)
+		if path.Steps[j].Status == smoothers.OK {
+			b.fitted(i, j, &row, r, &b.tests[i].rungs[j], path.Steps[j].RSS, &b.fit)
+		}
 		b.rows.Fits = append(b.rows.Fits, row)
 	}
 	for k, f := range b.folders {
 		path.Folds[k].K = f.k
 		f.validate(e.Smoother, e.DF, train.X, train.Y, path.Folds[k].Steps)
 	}
+	b.tests[i].judge(path)
 	fits := b.rows.Fits[first:]
 	for j := range fits {
 		path.record(j, &fits[j])
+		fits[j].LineP = b.tests[i].lineP(j, path)
+		b.collect(i, j, &fits[j], b.tests[i].overLines(j, b.rungs[i]))
 	}
 	b.picks(e, path, fits)
 }

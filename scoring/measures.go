@@ -1,6 +1,11 @@
 package scoring
 
-import "slices"
+import (
+	"math"
+	"slices"
+
+	"bendtest/results"
+)
 
 // A Measure is one figure of the table summary.
 type Measure struct {
@@ -20,6 +25,11 @@ type tally struct {
 	oracle []float64 // the oracle's df
 	edge   []float64 // 1 where the pick lies at the grid's edge
 	regret []float64
+	behind []float64 // ASE of the pick − ASE of the oracle
+
+	coverage, coverageBayes []float64 // where known
+	criterion, calibration  []float64 // the rule's own criterion, and that less held-out error, where known
+	failed                  int
 }
 
 // Measures returns all measures of the table summary, in its order.
@@ -34,6 +44,7 @@ func Measures() []Measure {
 		{"mean_excess", "mean of held-out error − what the truth itself scores on the same set", func(t *tally) Estimate { return Mean(t.excess) }},
 		{"median_excess", "median of held-out error − what the truth itself scores on the same set", func(t *tally) Estimate { return median(t.excess) }},
 		{"mean_ase", "mean average squared error at the held-out x", func(t *tally) Estimate { return Mean(t.ase) }},
+		{"mean_ase_difference", "mean of ASE of the pick − ASE of the oracle", func(t *tally) Estimate { return Mean(t.behind) }},
 		{"mean_regret", "mean of ASE of the pick ÷ ASE of the oracle", func(t *tally) Estimate { return Mean(t.regret) }},
 		{"median_regret", "median regret", quantile(0.5)},
 		{"q90_regret", "regret exceeded in one replicate of 10", quantile(0.9)},
@@ -49,6 +60,11 @@ func Measures() []Measure {
 		{"at_edge", "share of picks at either end of the grid", func(t *tally) Estimate {
 			return Proportion(t.edge, func(e float64) bool { return e == 1 })
 		}},
+		{"coverage", "coverage of the pick's 95 % pointwise band, averaged over the design", func(t *tally) Estimate { return Mean(t.coverage) }},
+		{"coverage_bayes", "the same for the Bayesian band of smoothing and penalised splines", func(t *tally) Estimate { return Mean(t.coverageBayes) }},
+		{"mean_criterion", "mean of the rule's own criterion at the pick, where that estimates held-out error", func(t *tally) Estimate { return Mean(t.criterion) }},
+		{"criterion_less_heldout", "mean of the rule's own criterion at the pick − held-out error: how optimistic the rule is about its choice", func(t *tally) Estimate { return Mean(t.calibration) }},
+		{"failure_rate", "share of replicates without a scored pick", failureRate},
 		{"df_oracle_correlation", "correlation of the df of pick and oracle", func(t *tally) Estimate { return Correlation(t.df, t.oracle) }},
 	}
 }
@@ -73,4 +89,14 @@ func nearOracle(t *tally) Estimate {
 		gap[i] = t.df[i] - t.oracle[i]
 	}
 	return Proportion(gap, func(g float64) bool { return -1 <= g && g <= 1 })
+}
+
+// failureRate is the share of replicates without a scored pick.
+func failureRate(t *tally) Estimate {
+	r := len(t.regret) + t.failed
+	if r == 0 {
+		return Estimate{}
+	}
+	p := float64(t.failed) / float64(r)
+	return Estimate{results.Num(p), results.Num(math.Sqrt(p * (1 - p) / float64(r)))}
 }

@@ -10,6 +10,8 @@ type Path struct {
 	Steps []Step // a rung each, by ascending df
 	Noise Variances
 	Folds []Folds // one entry per number of folds in the study
+
+	LineRSS float64 // residual sum of squares of the least-squares line
 }
 
 // A Step is one rung fitted to the training set.
@@ -23,6 +25,13 @@ type Step struct {
 	RSS        float64
 	LOOCV      float64
 	Likelihood Likelihood
+	Next       PValue // of the test of this rung within the next usable one
+}
+
+// A PValue is the probability of a test's statistic as large as it was, if known.
+type PValue struct {
+	P     float64
+	Known bool
 }
 
 // Likelihood holds what REML and ML need of a rung. Known is false for families

@@ -83,3 +83,30 @@ func (r *ByKFold) Pick(p *Path) (int, Verdict) {
 	}
 	return best, Picked
 }
+
+// ByFTest goes up from the smallest df and stops at the first rung that is not rejected
+// against the next usable one: exactly for nested projections, by the two-moment
+// approximation for others (Cleveland & Devlin 1988, JASA 83:596). It is not applicable
+// where a test on its way cannot be made.
+type ByFTest struct {
+	Alpha float64 `option:"alpha" above:"0" below:"1" doc:"level of each test"`
+}
+
+// Pick walks up the path.
+func (r *ByFTest) Pick(p *Path) (int, Verdict) {
+	at, last := p.edges()
+	if at < 0 {
+		return -1, NoRung
+	}
+	for ; at < last; at++ {
+		s := &p.Steps[at]
+		switch {
+		case s.Status != smoothers.OK:
+		case !s.Next.Known:
+			return -1, NotApplicable
+		case s.Next.P > r.Alpha:
+			return at, Picked
+		}
+	}
+	return last, Picked
+}

@@ -51,7 +51,7 @@ func (p *Path) record(j int, row *results.Fit) {
 func (b *Bench) picks(e *Entrant, path *Path, fits []results.Fit) {
 	oracle := bestASE(fits)
 	first, last := path.edges()
-	add := func(rule string, step int, verdict Verdict) {
+	add := func(rule string, step int, verdict Verdict) *results.Pick {
 		row := results.Pick{
 			Cell: b.key, Replicate: fits[0].Replicate, Smoother: e.Name, Rule: rule,
 			HeldoutNoise: fits[0].HeldoutNoise, Status: string(verdict),
@@ -64,10 +64,16 @@ func (b *Bench) picks(e *Entrant, path *Path, fits []results.Fit) {
 			row.AtEdge = step == first || step == last
 		}
 		b.rows.Picks = append(b.rows.Picks, row)
+		return &b.rows.Picks[len(b.rows.Picks)-1]
 	}
 	for _, r := range b.contest.Rules {
 		step, verdict := r.Rule.Pick(path)
-		add(r.Name, step, verdict)
+		row := add(r.Name, step, verdict)
+		if e, ok := r.Rule.(estimator); ok && step >= 0 {
+			if v, known := e.estimate(path, step); known {
+				row.Criterion = results.Num(v)
+			}
+		}
 	}
 	if oracle < 0 {
 		add(Oracle, -1, NoRung)
@@ -93,6 +99,7 @@ func bestASE(fits []results.Fit) int {
 func fill(row *results.Pick, f *results.Fit) {
 	row.DF = results.Num(f.DF)
 	row.HeldoutMSE, row.ASEHeldout = f.HeldoutMSE, f.ASEHeldout
+	row.Coverage, row.CoverageBayes = f.Coverage, f.CoverageBayes
 	if !f.ASEHeldout.Known {
 		row.Status = f.Status
 		return

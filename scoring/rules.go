@@ -40,6 +40,7 @@ func Rules() []RuleKind {
 		{"bic", "log(RSS/n) + tr S log(n)/n", func() Rule { return &ByBIC{} }},
 		{"reml", "restricted likelihood of the mixed-model form; splines with a curvature penalty only", func() Rule { return &ByREML{} }},
 		{"ml", "likelihood of the mixed-model form; splines with a curvature penalty only", func() Rule { return &ByML{} }},
+		{"ftest", "from the smallest df upward, the first rung that is not rejected against the next at α", func() Rule { return &ByFTest{Alpha: 0.05} }},
 		{"fixed", "the rung at a df chosen beforehand", func() Rule { return &FixedDF{} }},
 	}
 }

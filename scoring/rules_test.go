@@ -14,6 +14,7 @@ func ladderPath() *Path {
 		p.Steps = append(p.Steps, Step{
 			DF: df, TrS: df, DFResidual: 100 - df, RSS: rss, LOOCV: rss/100 + df/1000,
 			Likelihood: Likelihood{Quad: rss, LogDet: -2 * df, Known: true},
+			Next:       PValue{P: []float64{0.001, 0.01, 0.3, 0.02, 0}[i], Known: i < 4},
 		})
 	}
 	return p

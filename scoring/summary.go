@@ -2,6 +2,7 @@ package scoring
 
 import (
 	"maps"
+	"math"
 	"slices"
 
 	"bendtest/results"
@@ -20,7 +21,6 @@ type Summariser struct {
 type method struct {
 	smoother, rule string
 	tally          tally
-	failed         int            // replicates without a scored pick
 	statuses       map[string]int // of those replicates
 }
 
@@ -45,7 +45,7 @@ func (s *Summariser) Add(p *results.Pick) {
 // add takes one replicate.
 func (m *method) add(p *results.Pick) {
 	if !p.Regret.Known {
-		m.failed++
+		m.tally.failed++
 		if m.statuses == nil {
 			m.statuses = map[string]int{}
 		}
@@ -59,11 +59,26 @@ func (m *method) add(p *results.Pick) {
 	t.df = append(t.df, p.DF.Value)
 	t.oracle = append(t.oracle, p.OracleDF.Value)
 	t.regret = append(t.regret, p.Regret.Value)
+	t.behind = append(t.behind, p.ASEHeldout.Value-p.OracleASE.Value)
+	t.coverage = appendKnown(t.coverage, p.Coverage)
+	t.coverageBayes = appendKnown(t.coverageBayes, p.CoverageBayes)
+	if p.Criterion.Known && !math.IsInf(p.Criterion.Value, 0) {
+		t.criterion = append(t.criterion, p.Criterion.Value)
+		t.calibration = append(t.calibration, p.Criterion.Value-p.HeldoutMSE.Value)
+	}
 	edge := 0.0
 	if p.AtEdge {
 		edge = 1
 	}
 	t.edge = append(t.edge, edge)
+}
+
+// appendKnown appends a figure that is not null.
+func appendKnown(v []float64, n results.Number) []float64 {
+	if !n.Known {
+		return v
+	}
+	return append(v, n.Value)
 }
 
 // failure is the most frequent status of the failed replicates, the first in the
@@ -90,7 +105,27 @@ func (s *Summariser) Rows() []results.Summary {
 			e := measure.of(&m.tally)
 			rows = append(rows, results.Summary{
 				Cell: s.cell, Smoother: m.smoother, Rule: m.rule, Measure: measure.Name,
-				Value: e.Value, MCSE: e.MCSE, Replicates: len(m.tally.mse), Failed: m.failed, Failure: m.failure(),
+				Value: e.Value, MCSE: e.MCSE, Replicates: len(m.tally.mse), Failed: m.tally.failed, Failure: m.failure(),
+			})
+		}
+	}
+	return rows
+}
+
+// Choices returns how often each method picked each df, df ascending.
+func (s *Summariser) Choices() []results.Choice {
+	var rows []results.Choice
+	for i := range s.methods {
+		m := &s.methods[i]
+		count := map[float64]int{}
+		for _, df := range m.tally.df {
+			count[df]++
+		}
+		for _, df := range slices.Sorted(maps.Keys(count)) {
+			share := shareOf(count[df], len(m.tally.df))
+			rows = append(rows, results.Choice{
+				Cell: s.cell, Smoother: m.smoother, Rule: m.rule, DF: df, Picked: count[df], Replicates: len(m.tally.df),
+				Rate: share.Rate, Lo: share.Lo, Hi: share.Hi,
 			})
 		}
 	}

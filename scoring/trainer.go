@@ -11,6 +11,7 @@ import (
 type trainer struct {
 	x, y     []float64
 	detrend  []float64 // y less its least-squares line
+	lineRSS  float64   // its sum of squares
 	residual []float64
 	noise    Variances
 	shared   Path // handed out again and again
@@ -22,6 +23,10 @@ func (t *trainer) set(x, y []float64, known float64) {
 	t.x, t.y = x, y
 	t.detrend = append(t.detrend[:0], y...)
 	subtractLine(x, t.detrend)
+	t.lineRSS = 0
+	for _, e := range t.detrend {
+		t.lineRSS += e * e
+	}
 	t.noise = Variances{Known: known}
 	t.noise.Difference, t.noise.HasDiff = DifferenceVariance(x, y)
 	t.noise.Rice, t.noise.HasRice = RiceVariance(y)
@@ -31,7 +36,7 @@ func (t *trainer) set(x, y []float64, known float64) {
 // valid until the next call.
 func (t *trainer) path(steps, folds int) *Path {
 	p := &t.shared
-	p.N, p.Noise = len(t.x), t.noise
+	p.N, p.Noise, p.LineRSS = len(t.x), t.noise, t.lineRSS
 	p.Steps = regrow(p.Steps, steps)
 	p.Folds = regrow(p.Folds, folds)
 	for k := range p.Folds {

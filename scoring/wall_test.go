@@ -49,6 +49,7 @@ func everyFamily() *Contest {
 func training(f results.Fit) results.Fit {
 	var none results.Number
 	f.ASETrain, f.HeldoutMSE, f.HeldoutNoise = none, none, none
+	f.Coverage, f.CoverageBayes = none, none
 	f.ASEHeldout, f.ASEInside, f.ASEOutside = none, none, none
 	return f
 }

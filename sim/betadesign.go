@@ -40,8 +40,8 @@ func (l *betaLaw) draw(x []float64, s *Stream) {
 
 // mean divides by the total of the density as it is integrated, so that neither its
 // factor's rounding nor its own matters.
-func (l *betaLaw) mean(g integrand) (float64, error) {
-	sum, err := l.integral(g)
+func (l *betaLaw) mean(g integrand, within float64) (float64, error) {
+	sum, err := l.integral(g, within)
 	if err != nil {
 		return 0, err
 	}
@@ -49,25 +49,25 @@ func (l *betaLaw) mean(g integrand) (float64, error) {
 		for i := range dst {
 			dst[i] = 1
 		}
-	})
+	}, within)
 	return sum / total, err
 }
 
 // integral is ∫ g times the density, from each end to the middle.
-func (l *betaLaw) integral(g integrand) (float64, error) {
+func (l *betaLaw) integral(g integrand, within float64) (float64, error) {
 	width := l.hi - l.lo
-	low, err := betaHalf(l.a, l.b, g, func(v float64) float64 { return l.lo + width*v })
+	low, err := betaHalf(l.a, l.b, g, func(v float64) float64 { return l.lo + width*v }, within)
 	if err != nil {
 		return 0, err
 	}
-	high, err := betaHalf(l.b, l.a, g, func(v float64) float64 { return l.hi - width*v })
+	high, err := betaHalf(l.b, l.a, g, func(v float64) float64 { return l.hi - width*v }, within)
 	return low + high, err
 }
 
 // betaHalf is ∫ g(x(v)) v^(a−1) (1−v)^(b−1) dv/B(a, b) over [0, ½]. Where a < 1 the
 // density has a pole at 0, which t = v^a takes away. Logarithms keep large shapes
 // within the range of numbers.
-func betaHalf(a, b float64, g integrand, x func(v float64) float64) (float64, error) {
+func betaHalf(a, b float64, g integrand, x func(v float64) float64, within float64) (float64, error) {
 	factor := mathext.Lbeta(a, b)
 	to := 0.5
 	if a < 1 {
@@ -91,7 +91,7 @@ func betaHalf(a, b float64, g integrand, x func(v float64) float64) (float64, er
 		for i, w := range weight {
 			dst[i] *= w
 		}
-	}, 0, to)
+	}, 0, to, within)
 }
 
 func (l *betaLaw) cdf(x float64) float64 { return mathext.RegIncBeta(l.a, l.b, share(x, l.lo, l.hi)) }

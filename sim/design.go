@@ -18,8 +18,9 @@ type DesignLaw interface {
 type xLaw interface {
 	// draw fills x with independent draws, ascending.
 	draw(x []float64, s *Stream)
-	// mean returns E g(X), or why it cannot be worked out.
-	mean(g integrand) (float64, error)
+	// mean returns E g(X), or why it cannot be worked out; within is the precision of
+	// an integration (see integrate).
+	mean(g integrand, within float64) (float64, error)
 	// atoms are the values that x can take, ascending, or nil where x is continuous.
 	atoms() []float64
 }

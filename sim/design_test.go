@@ -107,7 +107,7 @@ func TestDiscreteDesignsHaveTheirProbabilities(t *testing.T) {
 		if x2 := stat.ChiSquare(obs, exp); x2 > (distuv.ChiSquared{K: float64(len(obs) - 1)}).Quantile(1-1e-6) {
 			t.Errorf("%s: χ² = %.1f on %d", c.design.describe(), x2, len(obs)-1)
 		}
-		mean, err := law.mean(func(dst, x []float64) { copy(dst, x) })
+		mean, err := law.mean(func(dst, x []float64) { copy(dst, x) }, exactly)
 		want := 0.0
 		for v, p := range c.p {
 			want += v * p / total
@@ -135,7 +135,7 @@ func TestMeansAgreeWithTheDistributionFunction(t *testing.T) {
 			first -= p
 			second -= 2 * x * p
 		}
-		one, err := on.mean(func(dst, x []float64) { copy(dst, x) })
+		one, err := on.mean(func(dst, x []float64) { copy(dst, x) }, exactly)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -143,7 +143,7 @@ func TestMeansAgreeWithTheDistributionFunction(t *testing.T) {
 			for i, v := range x {
 				dst[i] = v * v
 			}
-		})
+		}, exactly)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -163,7 +163,7 @@ func TestRoundedDesignHasItsDiscreteLaw(t *testing.T) {
 		for i, v := range x {
 			dst[i] = v * v
 		}
-	})
+	}, exactly)
 	want := 0.0
 	for k := range 11 {
 		p := 0.1

@@ -64,7 +64,7 @@ func (l *valuesLaw) draw(x []float64, s *Stream) {
 	}
 }
 
-func (l *valuesLaw) mean(g integrand) (float64, error) {
+func (l *valuesLaw) mean(g integrand, within float64) (float64, error) {
 	v := make([]float64, len(l.values))
 	g(v, l.values)
 	return floats.Sum(v) / float64(len(v)), nil

@@ -54,12 +54,12 @@ func (l *gapLaw) draw(x []float64, s *Stream) {
 	}
 }
 
-func (l *gapLaw) mean(g integrand) (float64, error) {
-	left, err := l.left.mean(g)
+func (l *gapLaw) mean(g integrand, within float64) (float64, error) {
+	left, err := l.left.mean(g, within)
 	if err != nil {
 		return 0, err
 	}
-	right, err := l.right.mean(g)
+	right, err := l.right.mean(g, within)
 	return l.p*left + (1-l.p)*right, err
 }
 

@@ -36,9 +36,13 @@ type integrator struct {
 	x, y       [batch * (degree + 1)]float64
 }
 
-// integrate returns ∫ f over [lo, hi], relative to ∫|f| good to about 1e-13 for
-// piecewise smooth f. The error says where f is not finite, or that it is too rough.
-func integrate(f integrand, lo, hi float64) (float64, error) {
+// exactly is the precision at which an integral of piecewise smooth f is good to about
+// 1e-13.
+const exactly = 1e-15
+
+// integrate returns ∫ f over [lo, hi]. A panel is done when what it may be off is no more
+// than within, relative to ∫|f|. The error says where f is not finite, or that it is too rough.
+func integrate(f integrand, lo, hi, within float64) (float64, error) {
 	in := newIntegrator(f)
 	todo, size, err := in.start(lo, hi)
 	sum := 0.0
@@ -50,7 +54,7 @@ func integrate(f integrand, lo, hi float64) (float64, error) {
 		n := 0
 		for ; len(todo) > 0 && n < batch; todo = todo[:len(todo)-1] {
 			p := todo[len(todo)-1]
-			if p.off <= 1e-15*size || p.depth == depth {
+			if p.off <= within*size || p.depth == depth {
 				sum += p.value
 				continue
 			}

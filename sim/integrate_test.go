@@ -31,7 +31,7 @@ func TestIntegralsHaveTheirClosedForms(t *testing.T) {
 		{"far from 0", func(x float64) float64 { return x }, 1e6, 1e6 + 1, 1e6 + 0.5},
 		{"nothing", func(float64) float64 { return 0 }, 0, 1, 0},
 	} {
-		got, err := integrate(vector(c.f), c.lo, c.hi)
+		got, err := integrate(vector(c.f), c.lo, c.hi, exactly)
 		if err != nil || math.Abs(got-c.want) > 1e-13*math.Abs(c.want) {
 			t.Errorf("%s: %.16g, want %.16g (%v)", c.name, got, c.want, err)
 		}
@@ -43,7 +43,7 @@ func TestIntegralsThatCannotBeSay(t *testing.T) {
 		"not finite at x =": func(x float64) float64 { return math.Log(x - 0.5) },
 		"too rough":         func(x float64) float64 { return x*1e9 - math.Floor(x*1e9) },
 	} {
-		if got, err := integrate(vector(f), 0, 1); err == nil || !strings.Contains(err.Error(), want) {
+		if got, err := integrate(vector(f), 0, 1, exactly); err == nil || !strings.Contains(err.Error(), want) {
 			t.Errorf("want an error of %q; got %v, %v", want, got, err)
 		}
 	}
@@ -62,7 +62,7 @@ func TestJumpsAreSeenWhereverTheyLie(t *testing.T) {
 				return 1
 			}
 			return 0
-		}), 0, 1)
+		}), 0, 1, exactly)
 		if err != nil || math.Abs(got-(1-at)) > 1e-14 {
 			t.Errorf("jump at %v: off by %.1e (%v)", at, got-(1-at), err)
 		}
@@ -79,7 +79,7 @@ func TestPointsStayWithinTheInterval(t *testing.T) {
 				return math.NaN()
 			}
 			return 1
-		}), lo, hi); err != nil {
+		}), lo, hi, exactly); err != nil {
 			t.Errorf("on [%v, %v]: %v", lo, hi, err)
 		}
 	}

@@ -63,7 +63,7 @@ func (r *roundedLaw) atoms() []float64 {
 
 // mean is exact: each value has the probability that the law gives to what is
 // rounded to it.
-func (r *roundedLaw) mean(g integrand) (float64, error) {
+func (r *roundedLaw) mean(g integrand, within float64) (float64, error) {
 	x := r.atoms()
 	v := make([]float64, len(x))
 	g(v, x)

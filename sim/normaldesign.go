@@ -53,7 +53,7 @@ func (l *normalLaw) draw(x []float64, s *Stream) {
 	}
 }
 
-func (l *normalLaw) mean(g integrand) (float64, error) {
+func (l *normalLaw) mean(g integrand, within float64) (float64, error) {
 	from, to := max(l.lo, l.centre-40*l.sd), min(l.hi, l.centre+40*l.sd) // no mass beyond
 	sum, err := integrate(func(dst, x []float64) {
 		g(dst, x)
@@ -61,7 +61,7 @@ func (l *normalLaw) mean(g integrand) (float64, error) {
 			z := (v - l.centre) / l.sd
 			dst[i] *= math.Exp(-z * z / 2)
 		}
-	}, from, to)
+	}, from, to, within)
 	return sum / (l.sd * math.Sqrt(2*math.Pi) * math.Abs(l.to-l.from)), err
 }
 

@@ -31,6 +31,7 @@ const (
 	forTrainE = "training errors"
 	forHeldX  = "held-out x"
 	forHeldE  = "held-out errors"
+	forFreshE = "fresh errors"
 )
 
 // Draw draws a replicate into s, overwriting what it held. What comes out depends
@@ -44,6 +45,17 @@ func (c *Cell) Draw(seed uint64, replicate int, s *Sample) {
 	s.stream.set(seed, c.hash, replicate, forHeldX)
 	c.x.draw(s.Held.X, &s.stream)
 	c.readings(seed, replicate, forHeldE, 0, &s.Held, s)
+}
+
+// Fresh draws a second set of readings at the training x of a replicate drawn into s,
+// with errors like those of a held-out set, into dst, of length n.
+func (c *Cell) Fresh(seed uint64, replicate int, s *Sample, dst []float64) {
+	s.stream.set(seed, c.hash, replicate, forFreshE)
+	c.errors(dst, &s.stream)
+	c.shape(dst, s.Train.X, 0, s)
+	for i, f := range s.Train.F {
+		dst[i] += f
+	}
 }
 
 // trainX sets the training x: as given, as first drawn, or drawn anew.
@@ -66,18 +78,27 @@ func (c *Cell) readings(seed uint64, replicate int, purpose string, rho float64,
 	s.stream.set(seed, c.hash, replicate, purpose)
 	e := set.Y
 	c.errors(e, &s.stream)
+	c.shape(e, set.X, rho, s)
+	for i, f := range set.F {
+		e[i] += f
+	}
+}
+
+// shape turns independent errors of variance 1 at x into errors of the cell, correlated
+// by rho in x order. s lends its memory.
+func (c *Cell) shape(e, x []float64, rho float64, s *Sample) {
 	if rho != 0 {
 		correlate(e, rho)
 	}
 	if c.Noise.Scale != nil {
 		s.at = resize(s.at, len(e))
-		c.Noise.Scale.Eval(s.at, set.X, &s.scale)
+		c.Noise.Scale.Eval(s.at, x, &s.scale)
 		for i, v := range s.at {
 			e[i] *= v
 		}
 	}
-	for i, f := range set.F {
-		e[i] = f + c.SD*e[i]
+	for i := range e {
+		e[i] *= c.SD
 	}
 }
 

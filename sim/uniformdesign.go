@@ -37,8 +37,8 @@ type uniformLaw struct {
 
 func (l *uniformLaw) draw(x []float64, s *Stream) { s.ascending(x, l.lo, l.hi) }
 
-func (l *uniformLaw) mean(g integrand) (float64, error) {
-	sum, err := integrate(g, l.lo, l.hi)
+func (l *uniformLaw) mean(g integrand, within float64) (float64, error) {
+	sum, err := integrate(g, l.lo, l.hi, within)
 	return sum / (l.hi - l.lo), err
 }
 

@@ -12,7 +12,7 @@ import (
 func (c *Cell) signalVariance() (float64, error) {
 	return c.Truth.integrals.get("signal over "+c.Design.describe(), func() (float64, error) {
 		var s expr.Scratch
-		mean, err := c.x.mean(func(dst, x []float64) { c.Truth.Eval(dst, x, &s) })
+		mean, err := c.x.mean(func(dst, x []float64) { c.Truth.Eval(dst, x, &s) }, exactly)
 		if err != nil {
 			return 0, err
 		}
@@ -21,7 +21,7 @@ func (c *Cell) signalVariance() (float64, error) {
 			for i, f := range dst {
 				dst[i] = (f - mean) * (f - mean)
 			}
-		})
+		}, exactly)
 		if variance <= 1e-28*mean*mean { // a constant, to rounding
 			variance = 0
 		}
@@ -73,7 +73,7 @@ func (c *Cell) integrateScale(scale *expr.Expression) (float64, error) {
 			negative = negative || v < 0
 			dst[i] = v * v
 		}
-	})
+	}, exactly)
 	switch {
 	case err != nil:
 		return 0, err

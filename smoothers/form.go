@@ -8,6 +8,7 @@ type Form uint8
 const (
 	General    Form = iota
 	Projection      // S is an orthogonal projection
+	Nested          // likewise, and the spaces of a ladder's rungs contain one another
 	Ridge           // S = (I + λK)⁻¹ with λ = Tuning, 0 and +∞ included, and one K for the whole ladder, which may hold some fits at 0
 )
 
@@ -21,7 +22,7 @@ type quartic interface {
 // where the form of S gives it in O(n); known is false for a General S.
 func (r *Rung) ResidualQuartic() (trQ2 float64, known bool) {
 	switch r.Form {
-	case Projection:
+	case Projection, Nested:
 		return r.DFResidual, r.Status == OK
 	case Ridge:
 		if q, ok := r.solver.(quartic); ok {

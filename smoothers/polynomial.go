@@ -72,7 +72,7 @@ func (l *polyLadder) attainable(df float64) bool {
 func (b *arnoldi) lay(r *Rung, p int) {
 	n, m := len(b.design.x), len(b.design.z)
 	r.TrS, r.TrSTS, r.DFResidual = float64(p), float64(p), float64(n-p)
-	r.Form, r.Lines = Projection, p >= 2
+	r.Form, r.Lines = Nested, p >= 2
 	r.Leverage, r.Remainder = b.mem.floats(n), b.mem.floats(n)
 	r.RowNorm2 = r.Leverage // S is a projection
 	copy(r.Leverage, b.lever[(p-1)*m:p*m])

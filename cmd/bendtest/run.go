@@ -13,6 +13,7 @@ import (
 
 	"bendtest/cmd/bendtest/sweep"
 	"bendtest/results"
+	"bendtest/scoring"
 )
 
 func runCommand() *cobra.Command {
@@ -135,6 +136,9 @@ func printOutcome(w io.Writer, path string) error {
 		from = to
 	}
 	fmt.Fprint(w, closingWords)
+	if err := printAudit(w, dir, cells); err != nil {
+		return err
+	}
 	names, err := dir.TableNames()
 	if err != nil {
 		return err
@@ -143,5 +147,24 @@ func printOutcome(w io.Writer, path string) error {
 	for _, name := range names {
 		fmt.Fprintf(w, "  %s.parquet\n", name)
 	}
+	return nil
+}
+
+// printAudit says in one line how many exact expectations the simulation met.
+func printAudit(w io.Writer, dir *results.Dir, cells []results.Cell) error {
+	rows, err := results.ReadRows(dir, results.Audits)
+	if err != nil {
+		return err
+	}
+	audited := map[string]bool{}
+	for _, r := range rows {
+		audited[r.Cell] = true
+	}
+	within, of := scoring.Agreement(rows)
+	fmt.Fprintf(w, "\naudit: %s of %s within 4 MCSE", thousands(within), thousands(of))
+	if left := len(cells) - len(audited); left > 0 {
+		fmt.Fprintf(w, " (exact expectations in %d of %d cells; a design drawn anew or over 500 observations has none)", len(audited), len(cells))
+	}
+	fmt.Fprintln(w)
 	return nil
 }

@@ -84,7 +84,9 @@ func runStudy(t *testing.T, text string, flags ...string) *results.Dir {
 }
 
 // reproducible are the tables that may not vary from run to run.
-var reproducible = []string{"cells", "fits", "picks", "summary", "columns"}
+var reproducible = []string{
+	"cells", "fits", "picks", "summary", "choices", "rungs", "curves", "tests", "audit", "columns",
+}
 
 func TestTablesDoNotDependOnWorkers(t *testing.T) {
 	want := map[string][]byte{}
@@ -106,46 +108,54 @@ func TestTablesDoNotDependOnWorkers(t *testing.T) {
 // rows reads the fits and picks of a run.
 func rows(t *testing.T, dir *results.Dir) ([]results.Fit, []results.Pick) {
 	t.Helper()
-	fits, err := results.ReadRows(dir, results.Fits)
-	if err != nil {
-		t.Fatal(err)
-	}
-	picks, err := results.ReadRows(dir, results.Picks)
-	if err != nil {
-		t.Fatal(err)
-	}
-	return fits, picks
+	return tableRows(t, dir, results.Fits), tableRows(t, dir, results.Picks)
 }
 
+// tableRows reads a table of a run.
+func tableRows[R any](t *testing.T, dir *results.Dir, table *results.Table[R]) []R {
+	t.Helper()
+	rows, err := results.ReadRows(dir, table)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return rows
+}
+
+// Whatever is added to a study, rows that were there stay to the last bit: other units
+// are cut then, so this is a test of how sums over replicates are made, too.
 func TestAdditionsLeaveEarlierRowsUnchanged(t *testing.T) {
-	fits, picks := rows(t, runStudy(t, smallStudy))
+	before := runStudy(t, smallStudy)
 	for name, text := range map[string]string{
 		"cell":     strings.Replace(smallStudy, "n = [20]", "n = [10, 20, 30]", 1),
 		"truth":    strings.Replace(smallStudy, "[truth.bend]", "[truth.another]\nf = \"exp(x)\"\n[truth.bend]", 1),
 		"smoother": strings.Replace(smallStudy, "[[smoother]]", "[[smoother]]\nfamily = \"kernel\"\nkernel = \"tricube\"\ndf = \"3..6\"\n[[smoother]]", 1),
 		"rule":     strings.Replace(smallStudy, "[[rule]]", "[[rule]]\nkind = \"aicc\"\n[[rule]]", 1),
 	} {
-		moreFits, morePicks := rows(t, runStudy(t, text))
-		if name != "rule" && len(moreFits) <= len(fits) || len(morePicks) <= len(picks) {
-			t.Fatalf("another %s adds no rows", name)
-		}
-		seenFits := map[results.Fit]bool{}
-		for _, f := range moreFits {
-			seenFits[f] = true
-		}
-		seenPicks := map[results.Pick]bool{}
-		for _, p := range morePicks {
-			seenPicks[p] = true
-		}
-		for _, f := range fits {
-			if !seenFits[f] {
-				t.Fatalf("another %s changes the fit %+v", name, f)
-			}
-		}
-		for _, p := range picks {
-			if !seenPicks[p] {
-				t.Fatalf("another %s changes the pick %+v", name, p)
-			}
+		after := runStudy(t, text)
+		stays(t, name, before, after, results.Fits, name != "rule")
+		stays(t, name, before, after, results.Picks, true)
+		stays(t, name, before, after, results.Summaries, true)
+		stays(t, name, before, after, results.Rungs, name != "rule")
+		stays(t, name, before, after, results.Curves, name != "rule")
+		stays(t, name, before, after, results.Tests, name != "rule")
+		stays(t, name, before, after, results.Audits, name != "rule")
+	}
+}
+
+// stays wants all rows of a table to be there after an addition, and more if it grows.
+func stays[R comparable](t *testing.T, name string, before, after *results.Dir, table *results.Table[R], grows bool) {
+	t.Helper()
+	was, is := tableRows(t, before, table), tableRows(t, after, table)
+	if len(was) == 0 || grows && len(is) <= len(was) {
+		t.Fatalf("another %s: table %s has %d rows after %d", name, table.Name, len(is), len(was))
+	}
+	seen := map[R]bool{}
+	for _, r := range is {
+		seen[r] = true
+	}
+	for _, r := range was {
+		if !seen[r] {
+			t.Fatalf("another %s changes in table %s the row %+v", name, table.Name, r)
 		}
 	}
 }
@@ -178,11 +188,9 @@ func TestRunningAgainKeepsWhatIsThereAndRedoesWhatIsBroken(t *testing.T) {
 }
 
 func TestKeepBoundsWhatIsWritten(t *testing.T) {
-	for keep, want := range map[string][]string{
-		"fits":    {"cells", "columns", "fits", "picks", "summary", "timings"},
-		"picks":   {"cells", "columns", "picks", "summary", "timings"},
-		"summary": {"cells", "columns", "summary", "timings"},
-	} {
+	small := []string{"audit", "cells", "choices", "columns", "curves", "rungs", "summary", "tests", "timings"}
+	for keep, large := range map[string][]string{"fits": {"fits", "picks"}, "picks": {"picks"}, "summary": nil} {
+		want := slices.Sorted(slices.Values(append(large, small...)))
 		dir := runStudy(t, "keep = \""+keep+"\"\n"+smallStudy)
 		names, err := dir.TableNames()
 		if err != nil || !slices.Equal(names, want) {

@@ -21,8 +21,12 @@ func forms(tr *trial, r *report) {
 		if rung.Form != smoothers.General {
 			symmetric(r, c, k)
 		}
-		if rung.Form == smoothers.Projection {
+		if rung.Form == smoothers.Projection || rung.Form == smoothers.Nested {
 			same(r, c, k, "S² is S", product(s, s), s)
+		}
+		if k > 0 && rung.Form == smoothers.Nested && c.rungs[k-1].Status == smoothers.OK {
+			before := c.matrix(k - 1)
+			same(r, c, k, "S leaves alone what the rung before can fit", product(s, before), before)
 		}
 		if rung.Lines {
 			from, span := c.x[0], c.x[len(c.x)-1]-c.x[0]

@@ -41,7 +41,7 @@ func Predict(plan *Plan) (Estimate, error) {
 		}
 		each := time.Since(start).Seconds() / (trialReplicates - 1)
 		found := bench.Rows()
-		part := results.Part{Fits: found.Fits, Picks: found.Picks}
+		part := results.Part{Fits: found.Fits, Picks: found.Picks} // moments are few beside them
 		size, err := part.Size()
 		if err != nil {
 			return e, err

@@ -3,14 +3,16 @@ package sweep
 import (
 	"fmt"
 	"strings"
+	"sync"
 
 	"bendtest/results"
 	"bendtest/scoring"
 )
 
 // Gather reads the plan's parts in order and writes the tables. All parts must be
-// there. It holds no more than one cell's picks in memory.
-func Gather(plan *Plan, dir *results.Dir) error {
+// there. It holds no more than one cell's picks in memory. Exact expectations are worked
+// out on several workers.
+func Gather(plan *Plan, dir *results.Dir, workers int) error {
 	if err := results.WriteRows(dir, results.Cells, cellRows(plan)); err != nil {
 		return err
 	}
@@ -20,9 +22,10 @@ func Gather(plan *Plan, dir *results.Dir) error {
 	if err := gatherPicks(plan, dir); err != nil {
 		return err
 	}
-	if err := results.WriteTable(dir, results.Summaries, func(add func(*results.Summary) error) error {
-		return summarise(plan, dir, add)
-	}); err != nil {
+	if err := gatherSummaries(plan, dir); err != nil {
+		return err
+	}
+	if err := gatherRungs(plan, dir, workers); err != nil {
 		return err
 	}
 	return results.WriteRows(dir, results.ColumnDocs, results.ColumnRows())
@@ -34,9 +37,7 @@ func gatherFits(plan *Plan, dir *results.Dir) error {
 		return dir.RemoveTable(results.Fits.Name)
 	}
 	return results.WriteTable(dir, results.Fits, func(add func(*results.Fit) error) error {
-		return eachPart(plan, dir, func(Unit) (func(*results.Fit) error, func(*results.Pick) error) {
-			return add, skip[results.Pick]
-		})
+		return eachPart(plan, dir, func(Unit) results.PartReader { return results.PartReader{Fit: add} })
 	})
 }
 
@@ -46,22 +47,25 @@ func gatherPicks(plan *Plan, dir *results.Dir) error {
 		return dir.RemoveTable(results.Picks.Name)
 	}
 	return results.WriteTable(dir, results.Picks, func(add func(*results.Pick) error) error {
-		return eachPart(plan, dir, func(Unit) (func(*results.Fit) error, func(*results.Pick) error) {
-			return skip[results.Fit], add
-		})
+		return eachPart(plan, dir, func(Unit) results.PartReader { return results.PartReader{Pick: add} })
 	})
 }
 
-func skip[R any](*R) error { return nil }
-
-// eachPart reads the plan's parts in order, each through the functions that to
-// returns for its unit.
-func eachPart(plan *Plan, dir *results.Dir, to func(Unit) (func(*results.Fit) error, func(*results.Pick) error)) error {
+// eachPart reads the plan's parts in order, each into the reader that to returns for its
+// unit.
+func eachPart(plan *Plan, dir *results.Dir, to func(Unit) results.PartReader) error {
 	for _, u := range plan.Units {
-		fit, pick := to(u)
-		if err := dir.ReadPart(u.Key, fit, pick); err != nil {
-			return fmt.Errorf("cell %s, replicates %d to %d: %w", plan.Study.Cells[u.Cell].Key, u.From, u.To-1, err)
+		if err := readPart(plan, dir, u, to(u)); err != nil {
+			return err
 		}
+	}
+	return nil
+}
+
+// readPart reads the part of a unit.
+func readPart(plan *Plan, dir *results.Dir, u Unit, to results.PartReader) error {
+	if err := dir.ReadPart(u.Key, to); err != nil {
+		return fmt.Errorf("cell %s, replicates %d to %d: %w", plan.Study.Cells[u.Cell].Key, u.From, u.To-1, err)
 	}
 	return nil
 }
@@ -79,39 +83,54 @@ func cellRows(plan *Plan) []results.Cell {
 	return rows
 }
 
-// summarise writes the summary of each cell once its last pick is read.
-func summarise(plan *Plan, dir *results.Dir, add func(*results.Summary) error) error {
-	var s *scoring.Summariser
-	at := -1
-	flush := func() error {
-		if s == nil {
-			return nil
-		}
-		rows := s.Rows()
-		for i := range rows {
-			if err := add(&rows[i]); err != nil {
-				return err
-			}
-		}
-		return nil
-	}
-	err := eachPart(plan, dir, func(u Unit) (func(*results.Fit) error, func(*results.Pick) error) {
-		return skip[results.Fit], func(p *results.Pick) error {
-			if u.Cell != at {
-				if err := flush(); err != nil {
+// gatherSummaries writes the tables summary and choices, a cell at a time.
+func gatherSummaries(plan *Plan, dir *results.Dir) error {
+	var choices []results.Choice
+	err := results.WriteTable(dir, results.Summaries, func(add func(*results.Summary) error) error {
+		return eachCell(plan, func(c int, units []Unit) error {
+			cell := &plan.Study.Cells[c]
+			s := scoring.NewSummariser(cell.Key, cell.Sim.NoiseVariance)
+			for _, u := range units {
+				if err := readPart(plan, dir, u, results.PartReader{Pick: func(p *results.Pick) error {
+					s.Add(clone(p))
+					return nil
+				}}); err != nil {
 					return err
 				}
-				cell := &plan.Study.Cells[u.Cell]
-				s, at = scoring.NewSummariser(cell.Key, cell.Sim.NoiseVariance), u.Cell
 			}
-			s.Add(clone(p))
-			return nil
-		}
+			choices = append(choices, s.Choices()...)
+			return addAll(add, s.Rows())
+		})
 	})
 	if err != nil {
 		return err
 	}
-	return flush()
+	return results.WriteRows(dir, results.Choices, choices)
+}
+
+// eachCell calls f for every cell with its units, in order.
+func eachCell(plan *Plan, f func(cell int, units []Unit) error) error {
+	for from := 0; from < len(plan.Units); {
+		to := from
+		for to < len(plan.Units) && plan.Units[to].Cell == plan.Units[from].Cell {
+			to++
+		}
+		if err := f(plan.Units[from].Cell, plan.Units[from:to]); err != nil {
+			return err
+		}
+		from = to
+	}
+	return nil
+}
+
+// addAll hands rows to a table.
+func addAll[R any](add func(*R) error, rows []R) error {
+	for i := range rows {
+		if err := add(&rows[i]); err != nil {
+			return err
+		}
+	}
+	return nil
 }
 
 // clone copies a row whose text lies in a file's buffer, so that the buffer can go.
@@ -119,4 +138,88 @@ func clone(p *results.Pick) *results.Pick {
 	c := *p
 	c.Smoother, c.Rule = strings.Clone(p.Smoother), strings.Clone(p.Rule)
 	return &c
+}
+
+// gatherRungs writes the tables that have to do with every rung: rungs, curves, tests
+// and audit.
+func gatherRungs(plan *Plan, dir *results.Dir, workers int) error {
+	var reports []*scoring.CellReport
+	err := eachCell(plan, func(c int, units []Unit) error {
+		moments, err := cellMoments(plan, dir, units)
+		cell := &plan.Study.Cells[c]
+		reports = append(reports, &scoring.CellReport{Key: cell.Key, Cell: cell.Sim, Contest: plan.Contest, Moments: moments})
+		return err
+	})
+	if err != nil {
+		return err
+	}
+	if err := writeReports(dir, results.Rungs, reports, (*scoring.CellReport).Rungs); err != nil {
+		return err
+	}
+	if err := writeReports(dir, results.Curves, reports, (*scoring.CellReport).Curves); err != nil {
+		return err
+	}
+	if err := writeReports(dir, results.Tests, reports, (*scoring.CellReport).Tests); err != nil {
+		return err
+	}
+	return results.WriteRows(dir, results.Audits, audits(plan, reports, workers))
+}
+
+// writeReports writes a table from what each cell's report has for it.
+func writeReports[R any](dir *results.Dir, t *results.Table[R], reports []*scoring.CellReport, rows func(*scoring.CellReport) []R) error {
+	return results.WriteTable(dir, t, func(add func(*R) error) error {
+		for _, c := range reports {
+			if err := addAll(add, rows(c)); err != nil {
+				return err
+			}
+		}
+		return nil
+	})
+}
+
+// cellMoments adds up the moments of a cell's units. All units but the last are whole
+// blocks, which is what a forest wants.
+func cellMoments(plan *Plan, dir *results.Dir, units []Unit) ([]scoring.Moment, error) {
+	var forest scoring.Forest
+	var tail []scoring.Moment
+	for _, u := range units {
+		moments := make([]scoring.Moment, scoring.MomentsOf(plan.Contest))
+		err := readPart(plan, dir, u, results.PartReader{Moment: func(m *results.Moment) error {
+			moments[m.Slot] = scoring.Moment{Count: m.Count, Mean: m.Mean, M2: m.M2}
+			return nil
+		}})
+		if err != nil {
+			return nil, err
+		}
+		if u.To-u.From == plan.block {
+			forest.Add(moments)
+		} else {
+			tail = moments
+		}
+	}
+	return forest.Total(tail), nil
+}
+
+// audits works out the table audit, cells side by side, rows in the order of the cells.
+func audits(plan *Plan, reports []*scoring.CellReport, workers int) []results.Audit {
+	found := make([][]results.Audit, len(reports))
+	queue := make(chan int)
+	var wait sync.WaitGroup
+	for range workers {
+		wait.Go(func() {
+			for c := range queue {
+				found[c] = reports[c].Audit(plan.Study.Seed)
+			}
+		})
+	}
+	for c := range reports {
+		queue <- c
+	}
+	close(queue)
+	wait.Wait()
+	var rows []results.Audit
+	for _, f := range found {
+		rows = append(rows, f...)
+	}
+	return rows
 }

@@ -84,7 +84,7 @@ func (j *Job) begin(dir *results.Dir) (*results.Manifest, error) {
 
 // gather writes the tables and names their parts in the manifest.
 func (j *Job) gather(plan *Plan, dir *results.Dir, manifest *results.Manifest, report *Report) error {
-	if err := Gather(plan, dir); err != nil {
+	if err := Gather(plan, dir, j.Workers); err != nil {
 		return err
 	}
 	if report.Worked > 0 {

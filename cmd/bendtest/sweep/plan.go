@@ -11,7 +11,8 @@ import (
 )
 
 // fitsPerUnit is about how many fits make a unit: enough that writing a part costs
-// nothing beside working it, few enough that little is lost when a sweep is killed.
+// nothing beside working it, few enough that little is lost when a sweep is killed. The
+// number of replicates is a power of 2, so that how they are cut changes no sum over them.
 const fitsPerUnit = 5000
 
 // A Unit is a block of replicates [From, To) of one cell.
@@ -26,17 +27,21 @@ type Plan struct {
 	Study   *scenarios.Study
 	Contest *scoring.Contest
 	Units   []Unit
+	block   int // replicates of a whole unit, a power of 2
 }
 
 // NewPlan cuts a study into units. version names the build: parts of another build
 // are not reused, since equality to the byte is promised within one build only.
 func NewPlan(study *scenarios.Study, version string) *Plan {
 	p := &Plan{Study: study, Contest: contest(study)}
-	block := max(1, fitsPerUnit/max(1, p.FitsPerReplicate()))
+	p.block = 1
+	for 2*p.block*p.FitsPerReplicate() <= fitsPerUnit {
+		p.block *= 2
+	}
 	for c := range study.Cells {
 		stem := p.stem(c, version)
-		for from := 0; from < study.Replicates; from += block {
-			to := min(from+block, study.Replicates)
+		for from := 0; from < study.Replicates; from += p.block {
+			to := min(from+p.block, study.Replicates)
 			key := hash(fmt.Sprintf("%s\nreplicates %d to %d", stem, from, to))
 			p.Units = append(p.Units, Unit{Cell: c, From: from, To: to, Key: key})
 		}

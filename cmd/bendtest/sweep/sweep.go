@@ -134,7 +134,7 @@ func (w *worker) work(u *Unit) (timing results.Timing, failures int, err error) 
 		w.bench.Replicate(r)
 	}
 	rows := w.bench.Rows()
-	part := results.Part{Picks: rows.Picks}
+	part := results.Part{Picks: rows.Picks, Moments: scoring.Pack(w.bench.Moments())}
 	if w.plan.KeepsFits() {
 		part.Fits = rows.Fits
 	}
