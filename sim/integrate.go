@@ -63,7 +63,9 @@ func integrate(f integrand, lo, hi, within float64) (float64, error) {
 			halves[n+1] = panel{a: mid, b: p.b, depth: p.depth + 1}
 			n += 2
 		}
-		_, err = in.apply(halves[:n])
+		if n > 0 {
+			_, err = in.apply(halves[:n])
+		}
 		todo = append(todo, halves[:n]...)
 	}
 	return sum, err
