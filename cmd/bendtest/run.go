@@ -136,9 +136,6 @@ func printOutcome(w io.Writer, path string) error {
 		from = to
 	}
 	fmt.Fprint(w, closingWords)
-	if err := printAudit(w, dir, cells); err != nil {
-		return err
-	}
 	names, err := dir.TableNames()
 	if err != nil {
 		return err
@@ -147,7 +144,7 @@ func printOutcome(w io.Writer, path string) error {
 	for _, name := range names {
 		fmt.Fprintf(w, "  %s.parquet\n", name)
 	}
-	return nil
+	return printAudit(w, dir, cells)
 }
 
 // printAudit says in one line how many exact expectations the simulation met.
