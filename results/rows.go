@@ -143,6 +143,40 @@ type Choice struct {
 	Lo, Hi     Number
 }
 
+// A Difference is a row of the table differences: two methods in the same replicates of a
+// cell.
+type Difference struct {
+	Cell          string
+	Smoother      string
+	Rule          string
+	ThanSmoother  string
+	ThanRule      string
+	ASEDifference Number
+	MCSE          Number
+	Better        Number
+	Replicates    int
+}
+
+// A Verdict is a row of the table verdict: one method over all cells. Intervals are of
+// 95 %.
+type Verdict struct {
+	Smoother string
+	Rule     string
+	MeanExcess, MeanLo, MeanHi,
+	WorstExcess, WorstLo, WorstHi Number
+	WorstCell string
+	MeanRank,
+	WorstRank Number
+	Behind, BehindLo, BehindHi Number
+	Tied                       bool
+	MeanWins, MinimaxWins      Number
+	Cells                      int
+	Replicates                 int
+	Failed                     int
+	Failure                    string
+	WorstFailureRate           Number
+}
+
 // A Moment is one entry of a part's vector of moments: how often a figure was seen, its
 // mean, and the sum of squared deviations from it. Entries never seen are left out.
 type Moment struct {

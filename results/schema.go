@@ -186,6 +186,53 @@ var Choices = &Table[Choice]{
 	},
 }
 
+// Differences has a row per cell × pair of methods.
+var Differences = &Table[Difference]{
+	Name: "differences",
+	Doc:  "paired differences between methods, replicate by replicate on the same data",
+	columns: []column[Difference]{
+		{"cell", "", "key of the cell", func(r *Difference) any { return &r.Cell }},
+		{"smoother", "", "label of the first method's smoother", func(r *Difference) any { return &r.Smoother }},
+		{"rule", "", "label of its rule", func(r *Difference) any { return &r.Rule }},
+		{"than_smoother", "", "label of the second method's smoother", func(r *Difference) any { return &r.ThanSmoother }},
+		{"than_rule", "", "label of its rule", func(r *Difference) any { return &r.ThanRule }},
+		{"ase_difference", "y²", "mean of the first's ASE − the second's at the held-out x; negative where the first is better", func(r *Difference) any { return &r.ASEDifference }},
+		{"mcse", "y²", "its Monte Carlo standard error, sd of the differences ÷ √replicates", func(r *Difference) any { return &r.MCSE }},
+		{"better", "", "share of replicates in which the first has the smaller ASE, exact ties counted half", func(r *Difference) any { return &r.Better }},
+		{"replicates", "", "number of replicates in which both have a scored pick", func(r *Difference) any { return &r.Replicates }},
+	},
+}
+
+// Verdicts has a row per method.
+var Verdicts = &Table[Verdict]{
+	Name: "verdict",
+	Doc:  "every method over all cells, each cell with equal weight, the least mean relative excess first",
+	columns: []column[Verdict]{
+		{"smoother", "", "label of the smoother", func(r *Verdict) any { return &r.Smoother }},
+		{"rule", "", "label of the rule", func(r *Verdict) any { return &r.Rule }},
+		{"mean_relative_excess", "", "mean over cells of mean ASE ÷ that of the cell's best method − 1; ASE is the expectation of the excess", func(r *Verdict) any { return &r.MeanExcess }},
+		{"mean_lo", "", "lower end of its 95 % bootstrap interval over replicates", func(r *Verdict) any { return &r.MeanLo }},
+		{"mean_hi", "", "upper end", func(r *Verdict) any { return &r.MeanHi }},
+		{"worst_relative_excess", "", "largest relative excess over the cells", func(r *Verdict) any { return &r.WorstExcess }},
+		{"worst_lo", "", "lower end of its interval", func(r *Verdict) any { return &r.WorstLo }},
+		{"worst_hi", "", "upper end", func(r *Verdict) any { return &r.WorstHi }},
+		{"worst_cell", "", "key of the cell where that is", func(r *Verdict) any { return &r.WorstCell }},
+		{"mean_rank", "", "mean over cells of the rank by mean ASE, 1 the best, ties averaged", func(r *Verdict) any { return &r.MeanRank }},
+		{"worst_rank", "", "worst rank in any cell", func(r *Verdict) any { return &r.WorstRank }},
+		{"behind", "", "(1 + mean relative excess) ÷ (1 + the least one of a method judged in all cells) − 1", func(r *Verdict) any { return &r.Behind }},
+		{"behind_lo", "", "lower end of its interval", func(r *Verdict) any { return &r.BehindLo }},
+		{"behind_hi", "", "upper end", func(r *Verdict) any { return &r.BehindHi }},
+		{"tied", "", "whether behind is within the indifference margin of 0.05", func(r *Verdict) any { return &r.Tied }},
+		{"mean_wins", "", "share of bootstrap resamplings in which the method has the least mean relative excess", func(r *Verdict) any { return &r.MeanWins }},
+		{"minimax_wins", "", "share in which it has the least worst relative excess", func(r *Verdict) any { return &r.MinimaxWins }},
+		{"cells", "", "number of cells in which it was judged; with fewer than others it cannot win", func(r *Verdict) any { return &r.Cells }},
+		{"replicates", "", "number of replicates with a scored pick, over all cells", func(r *Verdict) any { return &r.Replicates }},
+		{"failed", "", "number of replicates without one", func(r *Verdict) any { return &r.Failed }},
+		{"failure", "", "most frequent status of those, or empty", func(r *Verdict) any { return &r.Failure }},
+		{"worst_failure_rate", "", "largest share of replicates without a scored pick in any cell", func(r *Verdict) any { return &r.WorstFailureRate }},
+	},
+}
+
 // moments has a row per entry of a part's vector of moments. It is kept in parts alone.
 var moments = &Table[Moment]{
 	Name: "moments",

@@ -61,8 +61,8 @@ type TableDoc struct {
 // listed to people.
 func Tables() []TableDoc {
 	return []TableDoc{
-		docOf(Cells), docOf(Fits), docOf(Picks), docOf(Summaries), docOf(Choices), docOf(Rungs), docOf(Curves),
-		docOf(Tests), docOf(Audits), docOf(Timings), docOf(ColumnDocs),
+		docOf(Cells), docOf(Fits), docOf(Picks), docOf(Summaries), docOf(Choices), docOf(Differences),
+		docOf(Rungs), docOf(Curves), docOf(Tests), docOf(Audits), docOf(Verdicts), docOf(Timings), docOf(ColumnDocs),
 	}
 }
 

@@ -81,18 +81,6 @@ func appendKnown(v []float64, n results.Number) []float64 {
 	return append(v, n.Value)
 }
 
-// failure is the most frequent status of the failed replicates, the first in the
-// alphabet of equals, or "".
-func (m *method) failure() string {
-	worst := ""
-	for _, status := range slices.Sorted(maps.Keys(m.statuses)) {
-		if worst == "" || m.statuses[status] > m.statuses[worst] {
-			worst = status
-		}
-	}
-	return worst
-}
-
 // Rows returns a row per method and measure, methods in the order in which they
 // first came. The summariser takes no more picks afterwards.
 func (s *Summariser) Rows() []results.Summary {
@@ -105,7 +93,7 @@ func (s *Summariser) Rows() []results.Summary {
 			e := measure.of(&m.tally)
 			rows = append(rows, results.Summary{
 				Cell: s.cell, Smoother: m.smoother, Rule: m.rule, Measure: measure.Name,
-				Value: e.Value, MCSE: e.MCSE, Replicates: len(m.tally.mse), Failed: m.tally.failed, Failure: m.failure(),
+				Value: e.Value, MCSE: e.MCSE, Replicates: len(m.tally.mse), Failed: m.tally.failed, Failure: failure(m.statuses),
 			})
 		}
 	}

@@ -2,6 +2,7 @@ package sweep
 
 import (
 	"fmt"
+	"math/rand/v2"
 	"strings"
 	"sync"
 
@@ -83,29 +84,47 @@ func cellRows(plan *Plan) []results.Cell {
 	return rows
 }
 
-// gatherSummaries writes the tables summary and choices, a cell at a time.
+// gatherSummaries writes what comes of the picks: the tables summary, choices, differences
+// and verdict. It reads them once, a cell at a time.
 func gatherSummaries(plan *Plan, dir *results.Dir) error {
 	var choices []results.Choice
+	var differences []results.Difference
+	var appraisals []*scoring.Appraisal
+	var sources []rand.Source
 	err := results.WriteTable(dir, results.Summaries, func(add func(*results.Summary) error) error {
 		return eachCell(plan, func(c int, units []Unit) error {
 			cell := &plan.Study.Cells[c]
-			s := scoring.NewSummariser(cell.Key, cell.Sim.NoiseVariance)
+			summary := scoring.NewSummariser(cell.Key, cell.Sim.NoiseVariance)
+			pairs := scoring.NewPairs(cell.Key)
+			appraisal := scoring.NewAppraisal(cell.Key, plan.Study.Replicates)
 			for _, u := range units {
 				if err := readPart(plan, dir, u, results.PartReader{Pick: func(p *results.Pick) error {
-					s.Add(clone(p))
+					p = clone(p)
+					summary.Add(p)
+					pairs.Add(p)
+					appraisal.Add(p)
 					return nil
 				}}); err != nil {
 					return err
 				}
 			}
-			choices = append(choices, s.Choices()...)
-			return addAll(add, s.Rows())
+			choices = append(choices, summary.Choices()...)
+			differences = append(differences, pairs.Rows()...)
+			appraisals = append(appraisals, appraisal)
+			sources = append(sources, cell.Sim.Stream(plan.Study.Seed, 0, "verdict"))
+			return addAll(add, summary.Rows())
 		})
 	})
 	if err != nil {
 		return err
 	}
-	return results.WriteRows(dir, results.Choices, choices)
+	if err := results.WriteRows(dir, results.Choices, choices); err != nil {
+		return err
+	}
+	if err := results.WriteRows(dir, results.Differences, differences); err != nil {
+		return err
+	}
+	return results.WriteRows(dir, results.Verdicts, scoring.JudgeMethods(appraisals, sources))
 }
 
 // eachCell calls f for every cell with its units, in order.

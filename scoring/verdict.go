@@ -1,0 +1,275 @@
+package scoring
+
+import (
+	"cmp"
+	"math"
+	"math/rand/v2"
+	"slices"
+
+	"bendtest/results"
+)
+
+// Margin is the indifference margin of the table verdict: methods whose mean relative
+// excess is no more than this behind the least are called tied.
+const Margin = 0.05
+
+// resamplings is the number of times that replicates are drawn again for intervals.
+const resamplings = 1000
+
+// A docket is what a verdict weighs: the relative excess of every method in every cell.
+type docket struct {
+	cells   []*Appraisal
+	methods []methodName
+	place   map[methodName]int
+	full    []bool      // whether a method has picks in every cell
+	excess  [][]float64 // by method and cell, −1 where it has no picks
+	means   []float64
+}
+
+// JudgeMethods returns the rows of the table verdict from the appraisals of all cells, each
+// with a source of random numbers of its own.
+//
+// In a cell, the relative excess of a method is its mean ASE over that of the best
+// method there, less 1. Intervals are percentiles of a bootstrap of the replicates of each
+// cell (Efron & Tibshirani 1993, An Introduction to the Bootstrap, §13.3), the same for
+// all methods, so that they keep their pairing. Methods that never picked are left out.
+func JudgeMethods(cells []*Appraisal, sources []rand.Source) []results.Verdict {
+	d := newDocket(cells)
+	weights := make([][]float64, len(cells))
+	for c, a := range cells {
+		weights[c] = make([]float64, a.batches)
+		for b := range weights[c] {
+			weights[c][b] = 1
+		}
+	}
+	d.weigh(weights)
+	point := d.score()
+	rows := make([]results.Verdict, len(d.methods))
+	for m := range rows {
+		rows[m] = d.row(m, &point)
+	}
+	d.bootstrap(rows, &point, weights, sources)
+	d.rank(rows)
+	for m := range rows {
+		rows[m].Tied = rows[m].Behind.Known && rows[m].Behind.Value <= Margin
+	}
+	slices.SortStableFunc(rows, func(a, b results.Verdict) int {
+		return cmp.Or(-cmp.Compare(a.Cells, b.Cells), cmp.Compare(a.MeanExcess.Value, b.MeanExcess.Value))
+	})
+	return rows
+}
+
+// newDocket lists the methods that have picks somewhere.
+func newDocket(cells []*Appraisal) *docket {
+	d := &docket{cells: cells, place: map[methodName]int{}}
+	judged := map[methodName]int{}
+	for _, a := range cells {
+		for i := range a.methods {
+			if m := &a.methods[i]; m.failed < a.replicates {
+				judged[m.name]++
+			}
+		}
+	}
+	for _, a := range cells {
+		for i := range a.methods {
+			name := a.methods[i].name
+			if _, known := d.place[name]; known || judged[name] == 0 {
+				continue
+			}
+			d.place[name] = len(d.methods)
+			d.methods = append(d.methods, name)
+			d.full = append(d.full, judged[name] == len(cells))
+			d.excess = append(d.excess, make([]float64, len(cells)))
+		}
+	}
+	return d
+}
+
+// weigh works out the relative excesses with each batch of each cell counted as often as
+// weights say.
+func (d *docket) weigh(weights [][]float64) {
+	for c, a := range d.cells {
+		for m := range d.methods {
+			d.excess[m][c] = -1
+		}
+		d.means = a.means(d.means, weights[c])
+		best := math.Inf(1)
+		for _, v := range d.means {
+			if v >= 0 {
+				best = min(best, v)
+			}
+		}
+		for i, v := range d.means {
+			m, listed := d.place[a.methods[i].name]
+			if !listed || v < 0 {
+				continue
+			}
+			d.excess[m][c] = 0 // both may be 0, and then neither is behind
+			if v > best {
+				d.excess[m][c] = v/best - 1
+			}
+		}
+	}
+}
+
+// A standing is the methods' relative excess over the cells.
+type standing struct {
+	mean, worst       []float64 // by method
+	at                []int     // cell of the worst
+	meanWin, worstWin int       // methods with the least, −1 if no method is in all cells
+}
+
+// score sums the relative excesses up.
+func (d *docket) score() standing {
+	s := standing{
+		mean: make([]float64, len(d.methods)), worst: make([]float64, len(d.methods)),
+		at: make([]int, len(d.methods)), meanWin: -1, worstWin: -1,
+	}
+	for m, excess := range d.excess {
+		cells := 0.0
+		s.worst[m], s.at[m] = -1, -1
+		for c, v := range excess {
+			if v < 0 {
+				continue
+			}
+			cells++
+			s.mean[m] += v
+			if v > s.worst[m] {
+				s.worst[m], s.at[m] = v, c
+			}
+		}
+		s.mean[m] /= cells
+		if !d.full[m] {
+			continue
+		}
+		if s.meanWin < 0 || s.mean[m] < s.mean[s.meanWin] {
+			s.meanWin = m
+		}
+		if s.worstWin < 0 || s.worst[m] < s.worst[s.worstWin] {
+			s.worstWin = m
+		}
+	}
+	return s
+}
+
+// behind is how far method m lies behind method w.
+func (s *standing) behind(m, w int) float64 { return (1+s.mean[m])/(1+s.mean[w]) - 1 }
+
+// row fills in what the replicates as they are say of method m.
+func (d *docket) row(m int, s *standing) results.Verdict {
+	name := d.methods[m]
+	row := results.Verdict{
+		Smoother: name.smoother, Rule: name.rule,
+		MeanExcess: finite(s.mean[m]), WorstExcess: finite(s.worst[m]), WorstCell: d.cells[s.at[m]].cell,
+		WorstFailureRate: results.Num(0),
+	}
+	if s.meanWin >= 0 {
+		row.Behind = finite(s.behind(m, s.meanWin))
+	}
+	statuses := map[string]int{}
+	for c, a := range d.cells {
+		if d.excess[m][c] >= 0 {
+			row.Cells++
+		}
+		i, there := a.place[name]
+		if !there {
+			continue
+		}
+		failed := a.methods[i].failed
+		row.Failed += failed
+		row.Replicates += a.replicates - failed
+		row.WorstFailureRate.Value = max(row.WorstFailureRate.Value, float64(failed)/float64(a.replicates))
+		for status, count := range a.methods[i].statuses {
+			statuses[status] += count
+		}
+	}
+	row.Failure = failure(statuses)
+	return row
+}
+
+// bootstrap fills in intervals and shares of wins.
+func (d *docket) bootstrap(rows []results.Verdict, point *standing, weights [][]float64, sources []rand.Source) {
+	mean, worst, behind := samples(len(rows)), samples(len(rows)), samples(len(rows))
+	meanWins, worstWins := make([]float64, len(rows)), make([]float64, len(rows))
+	random := make([]*rand.Rand, len(sources))
+	for c, s := range sources {
+		random[c] = rand.New(s)
+	}
+	for range resamplings {
+		for c, w := range weights {
+			clear(w)
+			for range w {
+				w[random[c].IntN(len(w))]++
+			}
+		}
+		d.weigh(weights)
+		s := d.score()
+		for m := range rows {
+			mean[m], worst[m] = append(mean[m], s.mean[m]), append(worst[m], s.worst[m])
+			if point.meanWin >= 0 {
+				behind[m] = append(behind[m], s.behind(m, point.meanWin))
+			}
+		}
+		if s.meanWin >= 0 {
+			meanWins[s.meanWin] += 1.0 / resamplings
+			worstWins[s.worstWin] += 1.0 / resamplings
+		}
+	}
+	for m := range rows {
+		r := &rows[m]
+		r.MeanLo, r.MeanHi = middle(mean[m])
+		r.WorstLo, r.WorstHi = middle(worst[m])
+		r.BehindLo, r.BehindHi = middle(behind[m])
+		r.MeanWins, r.MinimaxWins = results.Num(meanWins[m]), results.Num(worstWins[m])
+	}
+}
+
+// samples makes room for the resamplings of each method.
+func samples(methods int) [][]float64 {
+	s := make([][]float64, methods)
+	for m := range s {
+		s[m] = make([]float64, 0, resamplings)
+	}
+	return s
+}
+
+// middle returns the 2.5 % and 97.5 % quantiles of v, which it sorts; null if it is empty
+// or holds what is no number.
+func middle(v []float64) (lo, hi results.Number) {
+	if len(v) == 0 || slices.ContainsFunc(v, math.IsNaN) {
+		return lo, hi
+	}
+	slices.Sort(v)
+	return Quantile(v, 0.025).Value, Quantile(v, 0.975).Value
+}
+
+// rank fills in the ranks by mean ASE, ties averaged.
+func (d *docket) rank(rows []results.Verdict) {
+	for _, a := range d.cells {
+		weight := make([]float64, a.batches)
+		for b := range weight {
+			weight[b] = 1
+		}
+		d.means = a.means(d.means, weight)
+		for i, v := range d.means {
+			m, listed := d.place[a.methods[i].name]
+			if !listed || v < 0 {
+				continue
+			}
+			below, equal := 0.0, 0.0
+			for _, u := range d.means {
+				switch {
+				case u < 0:
+				case u < v:
+					below++
+				case u == v:
+					equal++
+				}
+			}
+			rank := below + (equal+1)/2
+			row := &rows[m]
+			row.MeanRank = results.Num(row.MeanRank.Value + rank/float64(row.Cells))
+			row.WorstRank = results.Num(max(row.WorstRank.Value, rank))
+		}
+	}
+}
