@@ -50,13 +50,24 @@ func JudgeMethods(cells []*Appraisal, sources []rand.Source) []results.Verdict {
 	}
 	d.bootstrap(rows, &point, weights, sources)
 	d.rank(rows)
-	for m := range rows {
-		rows[m].Tied = rows[m].Behind.Known && rows[m].Behind.Value <= Margin
-	}
+	Tie(rows, Margin)
 	slices.SortStableFunc(rows, func(a, b results.Verdict) int {
 		return cmp.Or(-cmp.Compare(a.Cells, b.Cells), cmp.Compare(a.MeanExcess.Value, b.MeanExcess.Value))
 	})
 	return rows
+}
+
+// Tie marks the methods whose mean relative excess lies no more than margin behind the
+// least. A method that was not judged in all cells is never tied.
+func Tie(rows []results.Verdict, margin float64) {
+	most := 0
+	for i := range rows {
+		most = max(most, rows[i].Cells)
+	}
+	for i := range rows {
+		r := &rows[i]
+		r.Tied = r.Cells == most && r.Behind.Known && r.Behind.Value <= margin
+	}
 }
 
 // newDocket lists the methods that have picks somewhere.
@@ -211,8 +222,8 @@ func (d *docket) bootstrap(rows []results.Verdict, point *standing, weights [][]
 			}
 		}
 		if s.meanWin >= 0 {
-			meanWins[s.meanWin] += 1.0 / resamplings
-			worstWins[s.worstWin] += 1.0 / resamplings
+			meanWins[s.meanWin]++
+			worstWins[s.worstWin]++
 		}
 	}
 	for m := range rows {
@@ -220,7 +231,7 @@ func (d *docket) bootstrap(rows []results.Verdict, point *standing, weights [][]
 		r.MeanLo, r.MeanHi = middle(mean[m])
 		r.WorstLo, r.WorstHi = middle(worst[m])
 		r.BehindLo, r.BehindHi = middle(behind[m])
-		r.MeanWins, r.MinimaxWins = results.Num(meanWins[m]), results.Num(worstWins[m])
+		r.MeanWins, r.MinimaxWins = results.Num(meanWins[m]/resamplings), results.Num(worstWins[m]/resamplings)
 	}
 }
 
