@@ -8,6 +8,7 @@ import (
 	"strings"
 	"testing"
 
+	"bendtest/results"
 	"bendtest/scoring"
 	"bendtest/smoothers"
 )
@@ -73,6 +74,11 @@ func TestReadmeListsFamiliesAndRules(t *testing.T) {
 		rules += fmt.Sprintf("| `%s` | %s |\n", r.Name, r.Doc)
 	}
 	expectSection(t, "rules", rules)
+	tables := "| table | what it holds |\n|---|---|\n"
+	for _, d := range results.Tables() {
+		tables += fmt.Sprintf("| `%s` | %s |\n", d.Name, d.Doc)
+	}
+	expectSection(t, "tables", tables)
 }
 
 // readmeStudy is the study file that the README shows.
@@ -142,10 +148,17 @@ func TestReadmeShowsTheDemonstration(t *testing.T) {
 	if os.Getenv("BENDTEST_SLOW") == "" && !*update {
 		t.Skip("runs the whole demonstration; BENDTEST_SLOW=1 asks for it")
 	}
-	code, stdout, stderr := command(t, "run", "-o", filepath.Join(t.TempDir(), "demo"))
+	out := filepath.Join(t.TempDir(), "demo")
+	code, stdout, stderr := command(t, "run", "-o", out)
 	if code != exitDone {
 		t.Fatalf("exit %d: %s", code, stderr)
 	}
 	tables := strings.Split(strings.TrimLeft(stdout, "\n"), "\n\n")
 	expectSection(t, "demo", indented(tables[0]+"\n"))
+	code, stdout, stderr = command(t, "verdict", out)
+	if code != exitDone {
+		t.Fatalf("exit %d: %s", code, stderr)
+	}
+	lines := strings.SplitAfter(stdout, "\n")
+	expectSection(t, "verdict", indented(strings.Join(lines[:16], "")))
 }

@@ -4,6 +4,8 @@ import (
 	"errors"
 	"fmt"
 	"io/fs"
+	"strconv"
+	"strings"
 
 	"github.com/spf13/cobra"
 
@@ -99,5 +101,13 @@ func silentMethods(summary []results.Summary, judged []results.Verdict) []silent
 	return silent
 }
 
-// method names a method as people read it.
-func method(smoother, rule string) string { return fmt.Sprintf("%s with %s", smoother, rule) }
+// method names a method as people read it; a label of several words stands in quotes.
+func method(smoother, rule string) string {
+	quoted := func(label string) string {
+		if strings.ContainsAny(label, " ,") {
+			return strconv.Quote(label)
+		}
+		return label
+	}
+	return fmt.Sprintf("%s with %s", quoted(smoother), quoted(rule))
+}
