@@ -5,7 +5,9 @@ import { execFileSync } from "node:child_process";
 import { DuckDBInstance } from "@duckdb/node-api";
 
 const [dir, bendtest] = process.argv.slice(2);
-const tables = ["cells", "fits", "picks", "summary", "timings", "columns"];
+const tables = [
+  "cells", "fits", "picks", "summary", "choices", "differences", "rungs", "curves", "tests", "audit", "verdict", "timings", "columns",
+];
 const db = await (await DuckDBInstance.create(":memory:")).connect();
 let faults = 0;
 const fault = (text) => {
@@ -74,5 +76,28 @@ for (const m of means) {
   if (Math.abs(m.value - m.mean) > 1e-12 * Math.abs(m.mean)) fault(`mean regret ${m.cell} ${m.smoother} ${m.rule}: ${m.value}, DuckDB ${m.mean}`);
 }
 console.log(`${means.length} mean regrets agree`);
+
+// Means over replicates and counts of rejections from the fits, likewise.
+const rungs = await rows(`
+  select r.cell, r.smoother, r.df, r.quantity, r.mean as value, f.mean
+  from read_parquet('${dir}/tables/rungs.parquet') r
+  join (select cell, smoother, df, avg(heldout_mse) as heldout, avg(loocv) as loocv, avg(coverage) as coverage
+        from read_parquet('${dir}/tables/fits.parquet') group by all)
+       unpivot (mean for quantity in (heldout, loocv, coverage)) f using (cell, smoother, df, quantity)`);
+if (rungs.length === 0) fault("no rungs to compare");
+for (const r of rungs) {
+  if (Math.abs(r.value - r.mean) > 1e-12 * Math.abs(r.mean)) fault(`${r.quantity} of ${r.cell} ${r.smoother} ${r.df}: ${r.value}, DuckDB ${r.mean}`);
+}
+const tests = await rows(`
+  select t.cell, t.smoother, t.df, t.alpha, t.rejected, t.replicates, f.rejected as count, f.tested
+  from read_parquet('${dir}/tables/tests.parquet') t
+  join (select cell, smoother, df, alpha, count(*) filter (line_p <= alpha) as rejected, count(line_p) as tested
+        from read_parquet('${dir}/tables/fits.parquet'), (values (0.1), (0.05), (0.01)) levels(alpha) group by all) f
+  using (cell, smoother, df, alpha)`);
+if (tests.length === 0) fault("no tests to compare");
+for (const t of tests) {
+  if (Number(t.rejected) !== Number(t.count) || Number(t.replicates) !== Number(t.tested)) fault(`test ${t.cell} ${t.smoother} ${t.df} ${t.alpha}: ${t.rejected} of ${t.replicates}, DuckDB ${t.count} of ${t.tested}`);
+}
+console.log(`${rungs.length} means of rungs and ${tests.length} tests agree`);
 if (faults > 0) process.exit(1);
 console.log("1 passed, 0 failed");

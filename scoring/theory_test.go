@@ -16,23 +16,11 @@ import (
 // waveCell is a cell of n even x on [0, 1], f = sin 2πx, errors of sd 0.3.
 func waveCell(t testing.TB, n, heldOut int, noise *sim.Noise) *sim.Cell {
 	t.Helper()
-	f, err := expr.Compile("sin(2*pi*x)")
-	if err != nil {
-		t.Fatal(err)
-	}
-	truth, err := sim.NewTruth(f, 0, 1)
-	if err != nil {
-		t.Fatal(err)
-	}
 	if noise == nil {
 		sd := 0.3
 		noise = &sim.Noise{Law: &sim.NormalNoise{}, SD: &sd}
 	}
-	cell, err := sim.NewCell(truth, &sim.Design{Law: &sim.EvenDesign{}, Redraw: true}, noise, n, heldOut)
-	if err != nil {
-		t.Fatal(err)
-	}
-	return cell
+	return cellOf(t, "sin(2*pi*x)", &sim.EvenDesign{}, noise, n, heldOut)
 }
 
 // An exactMean is a row of exact means worked out in independent dense arithmetic for n =

@@ -12,7 +12,14 @@ import (
 // testCell returns a cell with a curved truth.
 func testCell(t testing.TB, law sim.DesignLaw, n, heldOut int) *sim.Cell {
 	t.Helper()
-	f, err := expr.Compile("3*exp(-2*x) + sin(2*pi*x)")
+	sd := 0.4
+	return cellOf(t, "3*exp(-2*x) + sin(2*pi*x)", law, &sim.Noise{Law: &sim.NormalNoise{}, SD: &sd}, n, heldOut)
+}
+
+// cellOf returns a cell on [0, 1].
+func cellOf(t testing.TB, curve string, law sim.DesignLaw, noise *sim.Noise, n, heldOut int) *sim.Cell {
+	t.Helper()
+	f, err := expr.Compile(curve)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -20,8 +27,6 @@ func testCell(t testing.TB, law sim.DesignLaw, n, heldOut int) *sim.Cell {
 	if err != nil {
 		t.Fatal(err)
 	}
-	sd := 0.4
-	noise := &sim.Noise{Law: &sim.NormalNoise{}, SD: &sd}
 	cell, err := sim.NewCell(truth, &sim.Design{Law: law, Redraw: true}, noise, n, heldOut)
 	if err != nil {
 		t.Fatal(err)

@@ -2,10 +2,7 @@ package smoothers
 
 import (
 	"fmt"
-	"math"
-	"math/rand/v2"
 	"runtime"
-	"slices"
 	"testing"
 )
 
@@ -16,15 +13,7 @@ func BenchmarkFamilies(b *testing.B) {
 	for _, family := range Families() {
 		for _, n := range []int{100, 10_000, 100_000, 1_000_000} {
 			b.Run(fmt.Sprintf("family=%s/n=%d", family.Name, n), func(b *testing.B) {
-				rng := rand.New(rand.NewPCG(1, 6))
-				x, y := make([]float64, n), make([]float64, n)
-				for i := range x {
-					x[i] = rng.Float64()
-				}
-				slices.Sort(x)
-				for i := range x {
-					y[i] = math.Sin(9*x[i]) + rng.NormFloat64()
-				}
+				x, y := noisyWave(n)
 				var f Fit
 				mem := &Arena{}
 				b.ReportAllocs()

@@ -5,9 +5,6 @@ package smoothers
 // Walther 2008, Evaluating Derivatives, §13.2).
 type jet [5]float64
 
-// level is a constant.
-func level(c float64) jet { return jet{c} }
-
 // decay is c·e^−θ, given its value c at the point.
 func decay(c float64) jet { return jet{c, -c, c / 2, -c / 6, c / 24} }
 

@@ -9,21 +9,27 @@ import (
 	"time"
 )
 
+// noisyWave returns n random x in order and readings about sin 9x.
+func noisyWave(n int) (x, y []float64) {
+	rng := rand.New(rand.NewPCG(1, 6))
+	x, y = make([]float64, n), make([]float64, n)
+	for i := range x {
+		x[i] = rng.Float64()
+	}
+	slices.Sort(x)
+	for i := range x {
+		y[i] = math.Sin(9*x[i]) + rng.NormFloat64()
+	}
+	return x, y
+}
+
 // A million observations: df solved and fitted in seconds on one core.
 func TestSmoothingSplineOfAMillionObservations(t *testing.T) {
 	if !slow {
 		t.Skip("set BENDTEST_SLOW to fit a million observations")
 	}
 	seconds := func(n int) float64 {
-		rng := rand.New(rand.NewPCG(1, 6))
-		x, y := make([]float64, n), make([]float64, n)
-		for i := range x {
-			x[i] = rng.Float64()
-		}
-		slices.Sort(x)
-		for i := range x {
-			y[i] = math.Sin(9*x[i]) + rng.NormFloat64()
-		}
+		x, y := noisyWave(n)
 		runtime.GC()
 		start := time.Now()
 		r := NewSmoothingSpline().On(x, nil).AtDF([]float64{12})[0]
