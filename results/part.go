@@ -22,6 +22,8 @@ type Part struct {
 	Fits    []Fit
 	Picks   []Pick
 	Moments []Moment
+
+	Variants []Variant // the study's own columns of fits
 }
 
 // A BrokenPartError says that a part file is not what was written. The unit is to
@@ -56,7 +58,7 @@ func (p *Part) encode() ([]byte, error) {
 		return nil
 	}
 	for _, stream := range []func(io.Writer) error{
-		func(w io.Writer) error { return writeStream(Fits, w, p.Fits) },
+		func(w io.Writer) error { return writeStream(FitsWith(p.Variants), w, p.Fits) },
 		func(w io.Writer) error { return writeStream(Picks, w, p.Picks) },
 		func(w io.Writer) error { return writeStream(moments, w, p.Moments) },
 	} {
@@ -192,6 +194,8 @@ type PartReader struct {
 	Fit    func(*Fit) error
 	Pick   func(*Pick) error
 	Moment func(*Moment) error
+
+	Variants []Variant // the study's own columns of fits
 }
 
 // ReadPart reads the part with a key.
@@ -200,7 +204,7 @@ func (d *Dir) ReadPart(key string, to PartReader) error {
 	if err != nil {
 		return err
 	}
-	if err := readIf(Fits, found[0], to.Fit); err != nil {
+	if err := readIf(FitsWith(to.Variants), found[0], to.Fit); err != nil {
 		return err
 	}
 	if err := readIf(Picks, found[1], to.Pick); err != nil {

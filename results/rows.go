@@ -45,7 +45,12 @@ type Fit struct {
 	Coverage, CoverageBayes,
 	LineP Number
 	GCV, LOOCV, KFold, KFoldSE, CP, AIC, AICc, BIC, REML, ML Number
+
+	Variants [MostVariants]Number // of criteria that the study has besides (see FitsWith)
 }
+
+// MostVariants bounds the number of columns that a study adds to the table fits.
+const MostVariants = 8
 
 // A Pick is a row of the table picks: what one rule picked from one ladder in one
 // replicate, or what the oracle would have.

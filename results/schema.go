@@ -61,6 +61,30 @@ var Fits = &Table[Fit]{
 	},
 }
 
+// A Variant is a column that a study adds to the table fits: a criterion that follows from
+// none of the others.
+type Variant struct{ Column, Doc string }
+
+// FitsWith is the table Fits with a study's own columns, at most MostVariants of them.
+func FitsWith(variants []Variant) *Table[Fit] {
+	t := *Fits
+	t.columns = append([]column[Fit](nil), Fits.columns...)
+	for i, v := range variants[:min(len(variants), MostVariants)] {
+		t.columns = append(t.columns, column[Fit]{v.Column, "y²", v.Doc, func(r *Fit) any { return &r.Variants[i] }})
+	}
+	return &t
+}
+
+// HasColumn reports whether the table has a column of that name.
+func (t *Table[R]) HasColumn(name string) bool {
+	for i := range t.columns {
+		if t.columns[i].name == name {
+			return true
+		}
+	}
+	return false
+}
+
 // Picks has a row per cell × replicate × smoother × rule, the oracle's included.
 var Picks = &Table[Pick]{
 	Name: "picks",

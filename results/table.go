@@ -68,10 +68,14 @@ func Tables() []TableDoc {
 
 func docOf[R any](t *Table[R]) TableDoc { return TableDoc{t.Name, t.Doc, t.Columns()} }
 
-// ColumnRows returns the rows of the table columns.
-func ColumnRows() []ColumnDoc {
+// ColumnRows returns the rows of the table columns for a study with its own columns of
+// fits.
+func ColumnRows(variants []Variant) []ColumnDoc {
 	var rows []ColumnDoc
 	for _, t := range Tables() {
+		if t.Name == Fits.Name {
+			t = docOf(FitsWith(variants))
+		}
 		rows = append(rows, t.Columns...)
 	}
 	return rows

@@ -68,6 +68,7 @@ type Bench struct {
 	trainer trainer
 	folders []*folder
 	tests   []ladderTests // by entrant
+	more    []variant
 	observer
 	rows Rows
 }
@@ -84,6 +85,7 @@ func NewBench(key string, cell *sim.Cell, contest *Contest, seed uint64) *Bench 
 	b.rungs = make([][]smoothers.Rung, len(contest.Entrants))
 	b.tests = make([]ladderTests, len(contest.Entrants))
 	b.observer = newObserver(cell, contest)
+	b.more = contest.variants()
 	for _, k := range contest.folds() {
 		b.folders = append(b.folders, &folder{k: k})
 	}
@@ -162,7 +164,7 @@ func (b *Bench) entrant(i, replicate int, train *sim.Set) {
 	b.tests[i].judge(path)
 	fits := b.rows.Fits[first:]
 	for j := range fits {
-		path.record(j, &fits[j])
+		path.record(j, &fits[j], b.more)
 		fits[j].LineP = b.tests[i].lineP(j, path)
 		b.collect(i, j, &fits[j], b.tests[i].overLines(j, b.rungs[i]))
 	}

@@ -28,9 +28,9 @@ func (s *Step) criteria(n int, gamma float64, variance *float64) Criteria {
 	return c
 }
 
-// record writes the criteria of step j, in their standard forms, into a row. A
-// criterion that does not apply stays null.
-func (p *Path) record(j int, row *results.Fit) {
+// record writes the criteria of step j, in their standard forms and then the variants,
+// into a row. A criterion that does not apply stays null.
+func (p *Path) record(j int, row *results.Fit, more []variant) {
 	s := &p.Steps[j]
 	if s.Status != smoothers.OK {
 		return
@@ -43,6 +43,11 @@ func (p *Path) record(j int, row *results.Fit) {
 	if len(p.Folds) > 0 && p.Folds[0].Steps[j].Known {
 		f := p.Folds[0].Steps[j]
 		row.KFold, row.KFoldSE = results.Num(f.Mean), results.Num(f.SE)
+	}
+	for i := range more {
+		if v, known := more[i].rule.estimate(p, j); known {
+			row.Variants[i] = results.Num(v)
+		}
 	}
 }
 

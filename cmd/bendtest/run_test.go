@@ -85,7 +85,7 @@ func runStudy(t *testing.T, text string, flags ...string) *results.Dir {
 
 // reproducible are the tables that may not vary from run to run.
 var reproducible = []string{
-	"cells", "fits", "picks", "summary", "choices", "rungs", "curves", "tests", "audit", "columns",
+	"cells", "fits", "picks", "summary", "choices", "differences", "rungs", "curves", "tests", "audit", "verdict", "columns",
 }
 
 func TestTablesDoNotDependOnWorkers(t *testing.T) {
@@ -188,7 +188,7 @@ func TestRunningAgainKeepsWhatIsThereAndRedoesWhatIsBroken(t *testing.T) {
 }
 
 func TestKeepBoundsWhatIsWritten(t *testing.T) {
-	small := []string{"audit", "cells", "choices", "columns", "curves", "rungs", "summary", "tests", "timings"}
+	small := []string{"audit", "cells", "choices", "columns", "curves", "differences", "rungs", "summary", "tests", "timings", "verdict"}
 	for keep, large := range map[string][]string{"fits": {"fits", "picks"}, "picks": {"picks"}, "summary": nil} {
 		want := slices.Sorted(slices.Values(append(large, small...)))
 		dir := runStudy(t, "keep = \""+keep+"\"\n"+smallStudy)
@@ -224,5 +224,36 @@ func TestAStopKeepsWhatIsDone(t *testing.T) {
 	}
 	if code, _, _ := command(t, "run", path, "-o", out); code != exitDone {
 		t.Errorf("going on: exit %d", code)
+	}
+}
+
+// Criteria that follow from no other column have one named after their rule.
+func TestVariantsOfCriteriaHaveColumns(t *testing.T) {
+	dir := runStudy(t, strings.Replace(smallStudy, "[[rule]]", `[[rule]]
+kind = "cp"
+variance = "rice"
+name = "cp of Rice"
+[[rule]]
+kind = "kfold"
+k = 3
+[[rule]]
+kind = "kfold"
+k = 4
+name = "bic"
+[[rule]]`, 1))
+	columns := []string{}
+	for _, c := range tableRows(t, dir, results.ColumnDocs) {
+		if c.Table == "fits" {
+			columns = append(columns, c.Column)
+		}
+	}
+	if got := columns[len(columns)-3:]; !slices.Equal(got, []string{"cp of Rice", "bic (rule)", "kfold k 5"}) {
+		t.Errorf("columns %q", got)
+	}
+	code, stdout, stderr := command(t, "export", dir.Path(), "fits")
+	lines := strings.Split(strings.TrimSpace(stdout), "\n")
+	fields := strings.Split(lines[1], ",")
+	if code != exitDone || !strings.HasSuffix(lines[0], ",cp of Rice,bic (rule),kfold k 5") || slices.Contains(fields[len(fields)-3:], "") {
+		t.Errorf("exit %d, %s\n%s\n%s", code, stderr, lines[0], lines[1])
 	}
 }

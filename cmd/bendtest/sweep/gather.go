@@ -29,7 +29,7 @@ func Gather(plan *Plan, dir *results.Dir, workers int) error {
 	if err := gatherRungs(plan, dir, workers); err != nil {
 		return err
 	}
-	return results.WriteRows(dir, results.ColumnDocs, results.ColumnRows())
+	return results.WriteRows(dir, results.ColumnDocs, results.ColumnRows(plan.Contest.Variants()))
 }
 
 // gatherFits writes the table fits, or removes it where the study does not keep it.
@@ -37,8 +37,9 @@ func gatherFits(plan *Plan, dir *results.Dir) error {
 	if !plan.KeepsFits() {
 		return dir.RemoveTable(results.Fits.Name)
 	}
-	return results.WriteTable(dir, results.Fits, func(add func(*results.Fit) error) error {
-		return eachPart(plan, dir, func(Unit) results.PartReader { return results.PartReader{Fit: add} })
+	own := plan.Contest.Variants()
+	return results.WriteTable(dir, results.FitsWith(own), func(add func(*results.Fit) error) error {
+		return eachPart(plan, dir, func(Unit) results.PartReader { return results.PartReader{Fit: add, Variants: own} })
 	})
 }
 

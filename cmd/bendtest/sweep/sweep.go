@@ -134,7 +134,9 @@ func (w *worker) work(u *Unit) (timing results.Timing, failures int, err error) 
 		w.bench.Replicate(r)
 	}
 	rows := w.bench.Rows()
-	part := results.Part{Picks: rows.Picks, Moments: scoring.Pack(w.bench.Moments())}
+	part := results.Part{
+		Picks: rows.Picks, Moments: scoring.Pack(w.bench.Moments()), Variants: w.plan.Contest.Variants(),
+	}
 	if w.plan.KeepsFits() {
 		part.Fits = rows.Fits
 	}
