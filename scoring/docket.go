@@ -92,7 +92,10 @@ func (d *docket) score() standing {
 			}
 		}
 		s.mean[m] /= cells
-		if !d.full[m] {
+		if cells == 0 { // a resampling without any of its picks
+			s.worst[m] = math.NaN()
+		}
+		if !d.full[m] || int(cells) < len(d.cells) {
 			continue
 		}
 		if s.meanWin < 0 || s.mean[m] < s.mean[s.meanWin] {

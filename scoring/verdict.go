@@ -138,10 +138,12 @@ func samples(methods int) [][]float64 {
 	return s
 }
 
-// middle returns the 2.5 % and 97.5 % quantiles of v, which it sorts; null if it is empty
-// or holds what is no number.
+// middle returns the 2.5 % and 97.5 % quantiles of v, which it sorts. Resamplings in which
+// none of a method's picks was drawn are left out; the ends are null if these are half
+// of all or more.
 func middle(v []float64) (lo, hi results.Number) {
-	if len(v) == 0 || slices.ContainsFunc(v, math.IsNaN) {
+	v = slices.DeleteFunc(v, math.IsNaN)
+	if len(v) <= resamplings/2 {
 		return lo, hi
 	}
 	slices.Sort(v)

@@ -25,9 +25,12 @@ are as good within the margin, and where no method is good enough.`,
   bendtest verdict night --margin 0.1 --floor 0.5`,
 		Args: between(1, 1),
 		RunE: func(cmd *cobra.Command, args []string) error {
-			for flag, v := range map[string]float64{"margin": margin, "floor": floor} {
-				if !(v >= 0 && v < 1e6) {
-					return refuse("--%s %g; want a share of at least 0, such as 0.05", flag, v)
+			for _, flag := range []struct {
+				name  string
+				value float64
+			}{{"margin", margin}, {"floor", floor}} {
+				if !(flag.value >= 0 && flag.value < 1e6) {
+					return refuse("--%s %g; want a share of at least 0, such as 0.05", flag.name, flag.value)
 				}
 			}
 			v, err := readVerdict(args[0], margin, floor)

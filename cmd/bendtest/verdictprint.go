@@ -75,16 +75,12 @@ func printWinners(w io.Writer, v *verdict) {
 			method(b.Smoother, b.Rule), interval(b.WorstExcess, b.WorstLo, b.WorstHi), b.WorstCell, interval(b.MeanExcess, b.MeanLo, b.MeanHi))
 	}
 	printTies(w, v, mean)
-	fmt.Fprintf(w, "  Drawing the replicates again, it is the least on average in %s of the cases,\n", percent(a.MeanWins))
-	fmt.Fprintf(w, "  and %s the least in the worst cell in %s.\n", sameOr(mean == worst, "it is", method(b.Smoother, b.Rule)+" is"), percent(b.MinimaxWins))
-}
-
-// sameOr picks a word.
-func sameOr(same bool, word, other string) string {
-	if same {
-		return word
+	fmt.Fprintf(w, "  Drawing the replicates again, %s is the least on average in %s of the cases,\n", method(a.Smoother, a.Rule), percent(a.MeanWins))
+	if mean == worst {
+		fmt.Fprintf(w, "  and the least in its worst cell in %s.\n", percent(b.MinimaxWins))
+		return
 	}
-	return other
+	fmt.Fprintf(w, "  and %s is the least in its worst cell in %s.\n", method(b.Smoother, b.Rule), percent(b.MinimaxWins))
 }
 
 // printTies names the methods that this evidence cannot tell from the best.
@@ -202,6 +198,9 @@ func printShortfalls(w io.Writer, v *verdict) {
 func printFailures(w io.Writer, v *verdict) {
 	for i := range v.methods {
 		m := &v.methods[i]
+		if m.Cells < len(v.cells) {
+			fmt.Fprintf(w, "\n%s has picks in %d of the %d cells only, so that it cannot be called the best.", method(m.Smoother, m.Rule), m.Cells, len(v.cells))
+		}
 		if m.Failed > 0 {
 			fmt.Fprintf(w, "\n%s has no pick in %s of %s replicates (%s); its figures leave these out.",
 				method(m.Smoother, m.Rule), thousands(m.Failed), thousands(m.Failed+m.Replicates), m.Failure)
