@@ -126,7 +126,7 @@ func (l *localLadder) layByRows(r *Rung, s *localRung) {
 // layRow fills in what a rung says of the i-th distinct x, where g is, and returns the
 // row of S, from the distinct x number l.fit.lo on.
 func (l *localLadder) layRow(r *Rung, g *gaze, i int) []float64 {
-	row, lev, rem := l.row(g, i)
+	row, lev, rem := l.fit.row(g, i)
 	var rest float64
 	for j, c := range l.count[l.fit.lo : l.fit.lo+len(row)] {
 		rest += c * row[j] * row[j]
@@ -194,15 +194,14 @@ func (l *localLadder) layout(tuning float64) panelLayout {
 }
 
 // row returns the weights with which the fitted value at the i-th distinct x takes
-// one observation of each distinct x from l.fit.lo on, zero at i itself; the leverage
+// one observation of each distinct x from f.lo on, zero at i itself; the leverage
 // lev, with which it takes an observation at i; and rem = 1 − lev.
 //
 // It fits without one observation at i and puts that back (Sherman & Morrison):
 // with v the variance of the fit without it, of weight 1, lev = v/(1 + v) and
 // rem = 1/(1 + v), and the rest of the row is rem times the row without it.
-func (l *localLadder) row(g *gaze, i int) (row []float64, lev, rem float64) {
-	f := &l.fit
-	if !f.at(g, l.z[i], i) {
+func (f *localFit) row(g *gaze, i int) (row []float64, lev, rem float64) {
+	if !f.at(g, f.l.z[i], i) {
 		f.lo, f.hi = i, i+1
 		row = f.w[:1]
 		row[0] = 0
@@ -248,31 +247,48 @@ func (s *localRung) solve(y []float64, f *Fit) {
 	l.spread(f.Fitted, f.Fitted[:m])
 }
 
-// matrix implements rower, from the rows if they are kept.
+// matrix implements rower: from the rows if they are kept, else they are worked out again.
 func (s *localRung) matrix(dst []float64) bool {
-	if s.rows.end == nil {
-		return false
-	}
 	l := s.l
-	n, from := len(l.x), 0
+	n, first, from := len(l.x), 0, 0 // observation, weight
+	g := l.gaze(s.tuning)
+	var fit localFit
+	if s.rows.end == nil {
+		fit = l.fitOn(make([]float64, l.scratch()))
+	}
 	clear(dst)
-	first := 0 // observation
-	for i, end := range s.rows.end {
-		row := dst[first*n : (first+1)*n]
-		at := 0
-		for _, c := range l.count[:int(s.rows.lo[i])] {
-			at += int(c)
+	for i, c := range l.count {
+		row, lo := []float64(nil), 0
+		if s.rows.end != nil {
+			row, lo = s.rows.weight[from:int(s.rows.end[i])], int(s.rows.lo[i])
+			from = int(s.rows.end[i])
+		} else {
+			g.at(l.z[i])
+			var lev float64
+			row, lev, _ = fit.row(&g, i)
+			lo = fit.lo
+			row[i-lo] = lev
 		}
-		for j, w := range s.rows.weight[from:int(end)] {
-			for range int(l.count[int(s.rows.lo[i])+j]) {
-				row[at] = w
-				at++
-			}
+		l.spreadRow(dst[first*n:(first+1)*n], row, lo)
+		for k := 1; k < int(c); k++ {
+			copy(dst[(first+k)*n:(first+k+1)*n], dst[first*n:(first+1)*n])
 		}
-		for k := 1; k < int(l.count[i]); k++ {
-			copy(dst[(first+k)*n:(first+k+1)*n], row)
-		}
-		first, from = first+int(l.count[i]), int(end)
+		first += int(c)
 	}
 	return true
+}
+
+// spreadRow writes weights of one observation at each distinct x, from the one numbered lo
+// on, to all observations.
+func (l *localLadder) spreadRow(dst, weight []float64, lo int) {
+	at := lo
+	if l.start != nil {
+		at = l.start[lo]
+	}
+	for j, w := range weight {
+		for range int(l.count[lo+j]) {
+			dst[at] = w
+			at++
+		}
+	}
 }

@@ -51,7 +51,7 @@ func compareSums(t *testing.T, name string, l *localLadder, tuning float64) {
 		want, wantSlope := l.fit.leverageAt(&g, v)
 		check("leverage", v, lev, want, sumsTol)
 		check("its slope", v, slope, wantSlope, 1e-8) // a guide for steps only
-		row, _, _ := l.row(&g, i)
+		row, _, _ := l.fit.row(&g, i)
 		norm := want * want * l.count[i]
 		for j, w := range row {
 			norm += w * w * l.count[l.fit.lo+j]

@@ -22,50 +22,62 @@ func (s *splineSolver) residualQuartic(r *Rung) float64 {
 
 // determinantRates implements splineFilter: log det⁺(I − S) is log of the last
 // determinant and the factors of the steps, all with a minus sign, and constants.
-func (f *curveFilter) determinantRates(q float64) (third, fourth float64) {
-	count, gap := f.design.count, f.gap
+func (l *curveFilter) determinantRates(q float64) (third, fourth float64) {
+	count, gap := l.design.count, l.gap
 	var a, b, c, d jet
-	var sum3, sum4 float64
 	for i, w := range count {
 		a[0] += w
-		d = d.plus(c.by(w))
+		d.add(w, &c)
 		if i == len(count)-1 {
 			break
 		}
+		// As in info.step, with f the factor and e = qh:
+		//   c ← (c + 2hb + h²(a + de/3))/f,  b ← (b + h(a + de/2))/f,  a ← (a + de)/f,  d ← d/f.
 		h := gap[i]
 		e := decay(q * h)
-		de := d.times(e)
-		factor := e.times(c.plus(b.by(h)).plus(a.plus(de.by(0.25)).by(h * h / 3)))
-		factor[0]++
-		r := factor.inverse()
-		factor.logRates(r[0], &sum3, &sum4)
-		c = c.plus(b.by(2 * h)).plus(a.plus(de.by(1.0 / 3)).by(h * h)).times(r)
-		b = b.plus(a.plus(de.by(0.5)).by(h)).times(r)
-		a = a.plus(de).times(r)
-		d = d.times(r)
+		de := d
+		de.times(&e)
+		f := c
+		f.add(h, &b)
+		f.add(h*h/3, &a)
+		f.add(h*h/12, &de)
+		f.times(&e)
+		f[0]++
+		f.logRates(&third, &fourth)
+		f.invert()
+		c.add(2*h, &b)
+		c.add(h*h, &a)
+		c.add(h*h/3, &de)
+		b.add(h, &a)
+		b.add(h/2, &de)
+		a.add(1, &de)
+		a.times(&f)
+		b.times(&f)
+		c.times(&f)
+		d.times(&f)
 	}
-	d.logRates(1/d[0], &sum3, &sum4)
-	return -6 * sum3, -24 * sum4
+	d.logRates(&third, &fourth)
+	return -6 * third, -24 * fourth
 }
 
 // determinantRates implements splineFilter, as for curveFilter.
-func (f *slopeFilter) determinantRates(q float64) (third, fourth float64) {
-	count, gap := f.design.count, f.gap
+func (l *slopeFilter) determinantRates(q float64) (third, fourth float64) {
+	count, gap := l.design.count, l.gap
 	var a jet
-	var sum3, sum4 float64
 	for i, w := range count {
 		a[0] += w
 		if i == len(count)-1 {
 			break
 		}
-		factor := decay(q * gap[i]).times(a)
-		factor[0]++
-		r := factor.inverse()
-		factor.logRates(r[0], &sum3, &sum4)
-		a = a.times(r)
+		f := decay(q * gap[i])
+		f.times(&a)
+		f[0]++
+		f.logRates(&third, &fourth)
+		f.invert()
+		a.times(&f)
 	}
-	a.logRates(1/a[0], &sum3, &sum4)
-	return -6 * sum3, -24 * sum4
+	a.logRates(&third, &fourth)
+	return -6 * third, -24 * fourth
 }
 
 // residualQuartic implements quartic.
