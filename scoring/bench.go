@@ -116,7 +116,7 @@ func (b *Bench) Score(replicate int, sample *sim.Sample) {
 	for _, f := range b.folders {
 		f.deal(len(train.X), b.cell.Stream(b.seed, replicate, f.purpose()))
 	}
-	b.layLadders(train.X)
+	b.layLadders(train.X, replicate)
 	b.observer.begin(b.cell, b.seed, replicate, sample)
 	for i := range b.contest.Entrants {
 		b.entrant(i, replicate, train)
@@ -126,16 +126,18 @@ func (b *Bench) Score(replicate int, sample *sim.Sample) {
 
 // layLadders works out every entrant's rungs on the design x; on a fixed design
 // only once.
-func (b *Bench) layLadders(x []float64) {
+func (b *Bench) layLadders(x []float64, replicate int) {
 	if b.laid {
 		return
 	}
 	b.laid = b.cell.FixedDesign()
 	b.arena.Lasting = b.laid
 	b.arena.Reset()
+	adjacent := b.contest.adjacent()
+	general := generalTests(len(x), replicate, b.laid, adjacent)
 	for i, e := range b.contest.Entrants {
 		b.rungs[i] = e.Smoother.On(x, &b.arena).AtDF(e.DF)
-		b.tests[i].lay(b.rungs[i], x, b.laid, b.contest.adjacent())
+		b.tests[i].lay(b.rungs[i], x, general, adjacent)
 	}
 }
 

@@ -132,16 +132,35 @@ func TestNestedProjectionsHaveTheOrdinaryF(t *testing.T) {
 	}
 }
 
-// Where it takes work of order n³ in each replicate, a test of a large design is left out.
-func TestLargeDesignsHaveNoGeneralTests(t *testing.T) {
-	x := make([]float64, mostGeneralDrawn+1)
-	for i := range x {
-		x[i] = float64(i)
+// Where they take work of order n³, tests are made as often as that of everyReplicate
+// observations would allow.
+func TestGeneralTestsKeepToTheirBudget(t *testing.T) {
+	for _, c := range []struct {
+		n               int
+		fixed, adjacent bool
+		want            int // of 1000 replicates
+	}{
+		{200, false, false, 1000}, {201, false, false, 500}, {400, false, false, 125}, {1000, false, false, 8},
+		{1001, false, false, 0}, {400, true, false, 1000}, {400, false, true, 1000}, {1001, true, true, 0},
+	} {
+		made := 0
+		for r := range 1000 {
+			if generalTests(c.n, r, c.fixed, c.adjacent) {
+				made++
+			}
+		}
+		if made != c.want {
+			t.Errorf("%+v: tests in %d of 1000 replicates", c, made)
+		}
 	}
+}
+
+func TestWhatHasAFormIsTestedWithoutWorkingOutS(t *testing.T) {
+	x := testDesigns()["even"]
 	for _, f := range smoothers.Families() {
 		rungs := f.New().On(x, nil).AtDF([]float64{4, 5})
 		var lt ladderTests
-		lt.lay(rungs, x, false, true)
+		lt.lay(rungs, x, false, false)
 		general := f.Name == "kernel" || f.Name == "local"
 		if lt.rungs[0].line.known == general {
 			t.Errorf("%s: the test of the line is worked out: %v", f.Name, lt.rungs[0].line.known)

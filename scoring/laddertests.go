@@ -11,11 +11,25 @@ import (
 )
 
 // Where S has no form, tests take work of order n³ per rung, in each replicate anew if
-// the design is drawn anew. Beyond these n the tests of such rungs are left out.
+// the design is drawn anew. Then beyond everyReplicate observations they are made in some
+// replicates only, so that they cost no more, and beyond mostGeneral in none.
 const (
-	mostGeneralFixed = 500
-	mostGeneralDrawn = 200
+	everyReplicate = 200
+	mostGeneral    = 1000
 )
+
+// generalTests reports whether the tests of rungs whose S has no form are worked out in a
+// replicate. A rule that goes by tests needs them in all.
+func generalTests(n, replicate int, fixed, adjacent bool) bool {
+	if n > mostGeneral {
+		return false
+	}
+	if n <= everyReplicate || fixed || adjacent {
+		return true
+	}
+	ratio := float64(n) / everyReplicate
+	return replicate%int(math.Ceil(ratio*ratio*ratio)) == 0
+}
 
 // A rungTests is what the tests on one rung take of the design.
 type rungTests struct {
@@ -29,7 +43,7 @@ type rungTests struct {
 type ladderTests struct {
 	rungs    []rungTests
 	n        int
-	most     int  // n up to which a general S is worked out
+	general  bool // whether a general S is worked out
 	adjacent bool // whether neighbouring rungs are to be compared
 	line     [2][]float64
 	matrix   []float64   // n × n
@@ -37,13 +51,11 @@ type ladderTests struct {
 	fit      smoothers.Fit
 }
 
-// lay works out the tests on the rungs of a ladder on x. fixed says that the design stays.
-func (t *ladderTests) lay(rungs []smoothers.Rung, x []float64, fixed, adjacent bool) {
+// lay works out the tests on the rungs of a ladder on x; general says whether those of
+// rungs whose S has no form, too.
+func (t *ladderTests) lay(rungs []smoothers.Rung, x []float64, general, adjacent bool) {
 	t.rungs = regrow(t.rungs, len(rungs))
-	t.n, t.most, t.adjacent = len(x), mostGeneralDrawn, adjacent
-	if fixed {
-		t.most = mostGeneralFixed
-	}
+	t.n, t.general, t.adjacent = len(x), general, adjacent
 	straight := t.setLine(x)
 	t.q = regrow(t.q, len(rungs))
 	for j := range rungs {
@@ -99,7 +111,7 @@ func (t *ladderTests) rung(j int, r *smoothers.Rung, straight bool) {
 	w := &t.rungs[j]
 	w.delta1 = r.DFResidual
 	w.delta2, w.known = r.ResidualQuartic()
-	if general := r.Form == smoothers.General; t.n <= t.most && (general || t.adjacent && r.Form == smoothers.Projection) {
+	if general := r.Form == smoothers.General; t.general && (general || t.adjacent && r.Form == smoothers.Projection) {
 		t.form(j, r)
 		if general {
 			w.delta2, w.known = t.inner(j, j), true
@@ -160,7 +172,7 @@ func (t *ladderTests) neighbours(rungs []smoothers.Rung, i, j int) comparison {
 		cross = ridgeCross(a, b)
 	case a.Form == smoothers.Nested && b.Form == smoothers.Nested:
 		cross = t.rungs[j].delta1
-	case t.n <= t.most && a.Form != smoothers.Ridge && b.Form != smoothers.Ridge:
+	case t.general && a.Form != smoothers.Ridge && b.Form != smoothers.Ridge:
 		cross = t.inner(i, j)
 	default:
 		return comparison{}

@@ -126,7 +126,7 @@ func (w *workload) family(b *testing.B, name string, i int) {
 		stage("tests", func(b *testing.B, s *sim.Sample, rungs []smoothers.Rung) {
 			var t ladderTests
 			for b.Loop() {
-				t.lay(rungs, s.Train.X, false, false)
+				t.lay(rungs, s.Train.X, w.n <= everyReplicate, false)
 			}
 		})
 	}
