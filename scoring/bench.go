@@ -134,7 +134,7 @@ func (b *Bench) layLadders(x []float64, replicate int) {
 	b.arena.Lasting = b.laid
 	b.arena.Reset()
 	adjacent := b.contest.adjacent()
-	general := generalTests(len(x), replicate, b.laid, adjacent)
+	general := generalTests(len(x), replicate, b.laid)
 	for i, e := range b.contest.Entrants {
 		b.rungs[i] = e.Smoother.On(x, &b.arena).AtDF(e.DF)
 		b.tests[i].lay(b.rungs[i], x, general, adjacent)

@@ -54,7 +54,7 @@ func FigureDocs() []FigureDoc {
 		loocvLessHeldout: {"loocv_less_heldout", "loocv − held-out error"},
 		kfoldLessHeldout: {"kfold_less_heldout", "kfold − held-out error"},
 		cpLessHeldout:    {"cp_less_heldout", "cp − held-out error"},
-		covered:          {"coverage", "share of training x at which the 95 % band ŷ ± t σ̂ √(SSᵀ)_ii covers f; σ̂² = RSS/δ₁, t on δ₁²/δ₂ df"},
+		covered:          {"coverage", "share of training x at which the 95 % band ŷ ± t σ̂ √(SSᵀ)_ii covers f; σ̂² = RSS/δ₁, t on δ₁²/δ₂ df, or δ₁ where δ₂ is not worked out"},
 		coveredKnown:     {"coverage_known", "the same with the known noise variance and the normal quantile"},
 		coveredBayes:     {"coverage_bayes", "the same with √S_ii in place of √(SSᵀ)_ii; smoothing and penalised splines"},
 	}

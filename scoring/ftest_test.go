@@ -136,22 +136,36 @@ func TestNestedProjectionsHaveTheOrdinaryF(t *testing.T) {
 // observations would allow.
 func TestGeneralTestsKeepToTheirBudget(t *testing.T) {
 	for _, c := range []struct {
-		n               int
-		fixed, adjacent bool
-		want            int // of 1000 replicates
+		n     int
+		fixed bool
+		want  int // of 1000 replicates
 	}{
-		{200, false, false, 1000}, {201, false, false, 500}, {400, false, false, 125}, {1000, false, false, 8},
-		{1001, false, false, 0}, {400, true, false, 1000}, {400, false, true, 1000}, {1001, true, true, 0},
+		{200, false, 1000}, {201, false, 500}, {400, false, 125}, {1000, false, 8}, {1001, false, 0}, {400, true, 1000}, {1001, true, 0},
 	} {
 		made := 0
 		for r := range 1000 {
-			if generalTests(c.n, r, c.fixed, c.adjacent) {
+			if generalTests(c.n, r, c.fixed) {
 				made++
 			}
 		}
 		if made != c.want {
 			t.Errorf("%+v: tests in %d of 1000 replicates", c, made)
 		}
+	}
+}
+
+// A rule that goes by tests of neighbouring rungs has them in every replicate, and what
+// else there is stays as it was.
+func TestTestsOfNeighboursChangeNothingElse(t *testing.T) {
+	rungs := smoothers.NewLocal().On(testDesigns()["even"], nil).AtDF([]float64{4, 5})
+	var with, without ladderTests
+	with.lay(rungs, testDesigns()["even"], false, true)
+	without.lay(rungs, testDesigns()["even"], false, false)
+	if !with.rungs[0].next.known || without.rungs[0].next.known {
+		t.Error("neighbours are not tested as they should")
+	}
+	if with.rungs[0].spread != without.rungs[0].spread || with.rungs[0].line != without.rungs[0].line {
+		t.Errorf("%+v with a test of neighbours, %+v without", with.rungs[0], without.rungs[0])
 	}
 }
 

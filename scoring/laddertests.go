@@ -18,13 +18,14 @@ const (
 	mostGeneral    = 1000
 )
 
-// generalTests reports whether the tests of rungs whose S has no form are worked out in a
-// replicate. A rule that goes by tests needs them in all.
-func generalTests(n, replicate int, fixed, adjacent bool) bool {
+// generalTests reports whether the line is tested in a replicate at rungs whose S has no
+// form. Tests of neighbouring rungs, which a rule may go by, are made in all replicates up
+// to mostGeneral.
+func generalTests(n, replicate int, fixed bool) bool {
 	if n > mostGeneral {
 		return false
 	}
-	if n <= everyReplicate || fixed || adjacent {
+	if n <= everyReplicate || fixed {
 		return true
 	}
 	ratio := float64(n) / everyReplicate
@@ -33,18 +34,20 @@ func generalTests(n, replicate int, fixed, adjacent bool) bool {
 
 // A rungTests is what the tests on one rung take of the design.
 type rungTests struct {
-	spread
-	line comparison // the straight line within this rung
-	next comparison // this rung within the next usable one
-	at   int        // that one's index
+	spread                // for bands and the test of the line
+	line       comparison // the straight line within this rung
+	neighbours spread     // for tests of neighbouring rungs
+	next       comparison // this rung within the next usable one
+	at         int        // that one's index
 }
 
 // A ladderTests works out the tests on one ladder. It owns its memory.
 type ladderTests struct {
 	rungs    []rungTests
 	n        int
-	general  bool // whether a general S is worked out
+	general  bool // whether the line is tested where S is general
 	adjacent bool // whether neighbouring rungs are to be compared
+	full     bool // whether S is worked out where it has to be
 	line     [2][]float64
 	matrix   []float64   // n × n
 	q        [][]float64 // per rung where it is needed, n × n, the upper triangle
@@ -56,6 +59,7 @@ type ladderTests struct {
 func (t *ladderTests) lay(rungs []smoothers.Rung, x []float64, general, adjacent bool) {
 	t.rungs = regrow(t.rungs, len(rungs))
 	t.n, t.general, t.adjacent = len(x), general, adjacent
+	t.full = general || adjacent && t.n <= mostGeneral
 	straight := t.setLine(x)
 	t.q = regrow(t.q, len(rungs))
 	for j := range rungs {
@@ -111,11 +115,15 @@ func (t *ladderTests) rung(j int, r *smoothers.Rung, straight bool) {
 	w := &t.rungs[j]
 	w.delta1 = r.DFResidual
 	w.delta2, w.known = r.ResidualQuartic()
-	if general := r.Form == smoothers.General; t.general && (general || t.adjacent && r.Form == smoothers.Projection) {
+	w.neighbours = w.spread
+	if general := r.Form == smoothers.General; t.full && (general || t.adjacent && r.Form == smoothers.Projection) {
 		t.form(j, r)
 		if general {
-			w.delta2, w.known = t.inner(j, j), true
+			w.neighbours = spread{w.delta1, t.inner(j, j), true}
 		}
+	}
+	if t.general {
+		w.spread = w.neighbours
 	}
 	if !straight || !w.known {
 		return
@@ -172,12 +180,12 @@ func (t *ladderTests) neighbours(rungs []smoothers.Rung, i, j int) comparison {
 		cross = ridgeCross(a, b)
 	case a.Form == smoothers.Nested && b.Form == smoothers.Nested:
 		cross = t.rungs[j].delta1
-	case t.general && a.Form != smoothers.Ridge && b.Form != smoothers.Ridge:
+	case t.full && a.Form != smoothers.Ridge && b.Form != smoothers.Ridge:
 		cross = t.inner(i, j)
 	default:
 		return comparison{}
 	}
-	return compare(t.rungs[i].spread, t.rungs[j].spread, cross, float64(t.n))
+	return compare(t.rungs[i].neighbours, t.rungs[j].neighbours, cross, float64(t.n))
 }
 
 // judge fills in the p-values of neighbouring rungs.
@@ -190,7 +198,7 @@ func (t *ladderTests) judge(p *Path) {
 		if w.at < 0 || !w.next.known || p.Steps[j].Status != smoothers.OK || p.Steps[w.at].Status != smoothers.OK {
 			continue
 		}
-		value := w.next.pValue(p.Steps[j].RSS, p.Steps[w.at].RSS, t.rungs[w.at].spread)
+		value := w.next.pValue(p.Steps[j].RSS, p.Steps[w.at].RSS, t.rungs[w.at].neighbours)
 		p.Steps[j].Next = PValue{value, true}
 	}
 }
