@@ -169,7 +169,7 @@ var Tests = &Table[Test]{
 		{"df", "df", "equivalent degrees of freedom of the alternative", func(r *Test) any { return &r.DF }},
 		{"alpha", "", "level of the test", func(r *Test) any { return &r.Alpha }},
 		{"rejected", "", "number of replicates in which the straight line was rejected", func(r *Test) any { return &r.Rejected }},
-		{"replicates", "", "number of replicates with a test; 0 where the rung is no more flexible than the line; fewer than were run for kernel and local on designs of over 200 observations drawn anew, where a test takes work of order n³, and 0 over 1000", func(r *Test) any { return &r.Replicates }},
+		{"replicates", "", "number of replicates with a test; 0 where the rung is no more flexible than the line; fewer than were run for kernel and local on designs of over 100 observations drawn anew, where a test takes work of order n³, and 0 over 1000", func(r *Test) any { return &r.Replicates }},
 		{"rate", "", "rejected ÷ replicates", func(r *Test) any { return &r.Rate }},
 		{"lo", "", "lower end of the exact (Clopper–Pearson) 95 % interval", func(r *Test) any { return &r.Lo }},
 		{"hi", "", "upper end of that interval", func(r *Test) any { return &r.Hi }},

@@ -140,7 +140,7 @@ func TestGeneralTestsKeepToTheirBudget(t *testing.T) {
 		fixed bool
 		want  int // of 1000 replicates
 	}{
-		{200, false, 1000}, {201, false, 500}, {400, false, 125}, {1000, false, 8}, {1001, false, 0}, {400, true, 1000}, {1001, true, 0},
+		{100, false, 1000}, {101, false, 500}, {200, false, 125}, {500, false, 8}, {1000, false, 1}, {1001, false, 0}, {400, true, 1000}, {1001, true, 0},
 	} {
 		made := 0
 		for r := range 1000 {

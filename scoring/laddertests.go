@@ -5,6 +5,7 @@ import (
 
 	"gonum.org/v1/gonum/blas"
 	"gonum.org/v1/gonum/blas/blas64"
+	"gonum.org/v1/gonum/floats"
 
 	"bendtest/results"
 	"bendtest/smoothers"
@@ -14,7 +15,7 @@ import (
 // the design is drawn anew. Then beyond everyReplicate observations they are made in some
 // replicates only, so that they cost no more, and beyond mostGeneral in none.
 const (
-	everyReplicate = 200
+	everyReplicate = 100
 	mostGeneral    = 1000
 )
 
@@ -50,6 +51,8 @@ type ladderTests struct {
 	full     bool // whether S is worked out where it has to be
 	line     [2][]float64
 	matrix   []float64   // n × n
+	unit     []float64   // n
+	from, to []int       // of each row of the matrix, what has weight
 	q        [][]float64 // per rung where it is needed, n × n, the upper triangle
 	fit      smoothers.Fit
 }
@@ -116,11 +119,15 @@ func (t *ladderTests) rung(j int, r *smoothers.Rung, straight bool) {
 	w.delta1 = r.DFResidual
 	w.delta2, w.known = r.ResidualQuartic()
 	w.neighbours = w.spread
-	if general := r.Form == smoothers.General; t.full && (general || t.adjacent && r.Form == smoothers.Projection) {
+	general := r.Form == smoothers.General
+	switch {
+	case t.full && general && !t.adjacent:
+		w.neighbours = spread{w.delta1, t.square(r), true}
+	case t.full && general:
 		t.form(j, r)
-		if general {
-			w.neighbours = spread{w.delta1, t.inner(j, j), true}
-		}
+		w.neighbours = spread{w.delta1, t.inner(j, j), true}
+	case t.full && t.adjacent && r.Form == smoothers.Projection:
+		t.form(j, r)
 	}
 	if t.general {
 		w.spread = w.neighbours
@@ -141,17 +148,64 @@ func (t *ladderTests) rung(j int, r *smoothers.Rung, straight bool) {
 	w.line = compare(spread{free, free, true}, w.spread, cross, float64(t.n))
 }
 
-// form works out Q of a rung.
-func (t *ladderTests) form(j int, r *smoothers.Rung) {
+// residual writes I − S of a rung.
+func (t *ladderTests) residual(r *smoothers.Rung) {
 	n := t.n
-	t.matrix, t.q[j] = regrow(t.matrix, n*n), regrow(t.q[j], n*n)
-	r.Matrix(t.matrix, t.q[j][:n], &t.fit)
+	t.matrix, t.unit = regrow(t.matrix, n*n), regrow(t.unit, n)
+	r.Matrix(t.matrix, t.unit, &t.fit)
 	for i, v := range t.matrix {
 		t.matrix[i] = -v
 	}
 	for i := range n {
 		t.matrix[i*n+i] = r.Remainder[i]
 	}
+}
+
+// noWeight is what a gaussian kernel's far weights may be without counting: n of them change
+// no digit of a row.
+const noWeight = 1e-19
+
+// square is tr Q², of R = I − S the squared norm of RRᵀ, by rows, of which only what has
+// weight is looked at.
+func (t *ladderTests) square(r *smoothers.Rung) float64 {
+	t.residual(r)
+	n := t.n
+	t.from, t.to = regrow(t.from, n), regrow(t.to, n)
+	for i := range n {
+		row := t.matrix[i*n : (i+1)*n]
+		from, to := 0, n
+		for from < i && math.Abs(row[from]) < noWeight {
+			from++
+		}
+		for to > i+1 && math.Abs(row[to-1]) < noWeight {
+			to--
+		}
+		t.from[i], t.to[i] = from, to
+	}
+	sum := 0.0
+	for i := range n {
+		half := 0.0
+		for j := range i + 1 {
+			from, to := max(t.from[i], t.from[j]), min(t.to[i], t.to[j])
+			if from >= to {
+				continue
+			}
+			d := floats.Dot(t.matrix[i*n+from:i*n+to], t.matrix[j*n+from:j*n+to])
+			half += d * d
+			if i == j {
+				half -= d * d / 2
+			}
+		}
+		sum += 2 * half
+	}
+	return sum
+}
+
+// form works out Q of a rung.
+func (t *ladderTests) form(j int, r *smoothers.Rung) {
+	t.residual(r)
+	n := t.n
+	t.q[j] = regrow(t.q[j], n*n)
 	rest := blas64.General{Rows: n, Cols: n, Stride: n, Data: t.matrix}
 	blas64.Syrk(blas.Trans, 1, rest, 0, blas64.Symmetric{Uplo: blas.Upper, N: n, Stride: n, Data: t.q[j]})
 }
