@@ -1,6 +1,7 @@
 package sweep
 
 import (
+	"errors"
 	"fmt"
 	"math/rand/v2"
 	"strings"
@@ -87,44 +88,52 @@ func cellRows(plan *Plan) []results.Cell {
 // gatherSummaries writes what comes of the picks: the tables summary, choices, differences
 // and verdict. It reads them once, a cell at a time.
 func gatherSummaries(plan *Plan, dir *results.Dir) error {
-	var choices []results.Choice
-	var differences []results.Difference
 	var appraisals []*scoring.Appraisal
 	var sources []rand.Source
-	err := results.WriteTable(dir, results.Summaries, func(add func(*results.Summary) error) error {
-		return eachCell(plan, func(c int, units []Unit) error {
-			cell := &plan.Study.Cells[c]
-			summary := scoring.NewSummariser(cell.Key, cell.Sim.NoiseVariance)
-			pairs := scoring.NewPairs(cell.Key)
-			appraisal := scoring.NewAppraisal(cell.Key, plan.Study.Replicates)
-			for _, u := range units {
-				if err := readPart(plan, dir, u, results.PartReader{Pick: func(p *results.Pick) error {
-					p = clone(p)
-					summary.Add(p)
-					pairs.Add(p)
-					appraisal.Add(p)
-					return nil
-				}}); err != nil {
-					return err
-				}
-			}
-			choices = append(choices, summary.Choices()...)
-			differences = append(differences, pairs.Rows()...)
-			appraisals = append(appraisals, appraisal)
-			sources = append(sources, cell.Sim.Stream(plan.Study.Seed, 0, "verdict"))
-			return addAll(add, summary.Rows())
+	err := results.WriteTable(dir, results.Summaries, func(addSummary func(*results.Summary) error) error {
+		return results.WriteTable(dir, results.Choices, func(addChoice func(*results.Choice) error) error {
+			return results.WriteTable(dir, results.Differences, func(addDifference func(*results.Difference) error) error {
+				return eachCell(plan, func(c int, units []Unit) error {
+					cell := &plan.Study.Cells[c]
+					summary := scoring.NewSummariser(cell.Key, cell.Sim.NoiseVariance)
+					pairs := scoring.NewPairs(cell.Key)
+					appraisal := scoring.NewAppraisal(cell.Key, plan.Study.Replicates)
+					if err := eachPick(plan, dir, units, func(p *results.Pick) {
+						summary.Add(p)
+						pairs.Add(p)
+						appraisal.Add(p)
+					}); err != nil {
+						return err
+					}
+					appraisals = append(appraisals, appraisal)
+					sources = append(sources, cell.Sim.Stream(plan.Study.Seed, 0, "verdict"))
+					return errors.Join(
+						addAll(addSummary, summary.Rows()),
+						addAll(addChoice, summary.Choices()),
+						addAll(addDifference, pairs.Rows()),
+					)
+				})
+			})
 		})
 	})
 	if err != nil {
 		return err
 	}
-	if err := results.WriteRows(dir, results.Choices, choices); err != nil {
-		return err
-	}
-	if err := results.WriteRows(dir, results.Differences, differences); err != nil {
-		return err
-	}
 	return results.WriteRows(dir, results.Verdicts, scoring.JudgeMethods(appraisals, sources))
+}
+
+// eachPick reads the picks of units in order.
+func eachPick(plan *Plan, dir *results.Dir, units []Unit, take func(*results.Pick)) error {
+	for _, u := range units {
+		err := readPart(plan, dir, u, results.PartReader{Pick: func(p *results.Pick) error {
+			take(clone(p))
+			return nil
+		}})
+		if err != nil {
+			return err
+		}
+	}
+	return nil
 }
 
 // eachCell calls f for every cell with its units, in order.

@@ -1,6 +1,7 @@
 package sweep
 
 import (
+	"errors"
 	"sync"
 
 	"bendtest/results"
@@ -8,40 +9,43 @@ import (
 )
 
 // gatherRungs writes the tables that have to do with every rung: rungs, curves, tests
-// and audit.
+// and audit. Each is a pass over the parts, so that no more than the sums of a cell per
+// worker are in memory.
 func gatherRungs(plan *Plan, dir *results.Dir, workers int) error {
-	var reports []*scoring.CellReport
-	err := eachCell(plan, func(c int, units []Unit) error {
-		moments, err := cellMoments(plan, dir, units)
-		cell := &plan.Study.Cells[c]
-		reports = append(reports, &scoring.CellReport{Key: cell.Key, Cell: cell.Sim, Contest: plan.Contest, Moments: moments})
+	if err := writeReports(plan, dir, results.Rungs, (*scoring.CellReport).Rungs); err != nil {
 		return err
-	})
+	}
+	if err := writeReports(plan, dir, results.Curves, (*scoring.CellReport).Curves); err != nil {
+		return err
+	}
+	if err := writeReports(plan, dir, results.Tests, (*scoring.CellReport).Tests); err != nil {
+		return err
+	}
+	rows, err := audits(plan, dir, workers)
 	if err != nil {
 		return err
 	}
-	if err := writeReports(dir, results.Rungs, reports, (*scoring.CellReport).Rungs); err != nil {
-		return err
-	}
-	if err := writeReports(dir, results.Curves, reports, (*scoring.CellReport).Curves); err != nil {
-		return err
-	}
-	if err := writeReports(dir, results.Tests, reports, (*scoring.CellReport).Tests); err != nil {
-		return err
-	}
-	return results.WriteRows(dir, results.Audits, audits(plan, reports, workers))
+	return results.WriteRows(dir, results.Audits, rows)
 }
 
 // writeReports writes a table from what each cell's report has for it.
-func writeReports[R any](dir *results.Dir, t *results.Table[R], reports []*scoring.CellReport, rows func(*scoring.CellReport) []R) error {
+func writeReports[R any](plan *Plan, dir *results.Dir, t *results.Table[R], rows func(*scoring.CellReport) []R) error {
 	return results.WriteTable(dir, t, func(add func(*R) error) error {
-		for _, c := range reports {
-			if err := addAll(add, rows(c)); err != nil {
+		return eachCell(plan, func(_ int, units []Unit) error {
+			report, err := cellReport(plan, dir, units)
+			if err != nil {
 				return err
 			}
-		}
-		return nil
+			return addAll(add, rows(report))
+		})
 	})
+}
+
+// cellReport reads the report of the cell that the units are of.
+func cellReport(plan *Plan, dir *results.Dir, units []Unit) (*scoring.CellReport, error) {
+	moments, err := cellMoments(plan, dir, units)
+	cell := &plan.Study.Cells[units[0].Cell]
+	return &scoring.CellReport{Key: cell.Key, Cell: cell.Sim, Contest: plan.Contest, Moments: moments}, err
 }
 
 // cellMoments adds up the moments of a cell's units. All units but the last are whole
@@ -68,18 +72,28 @@ func cellMoments(plan *Plan, dir *results.Dir, units []Unit) ([]scoring.Moment, 
 }
 
 // audits works out the table audit, cells side by side, rows in the order of the cells.
-func audits(plan *Plan, reports []*scoring.CellReport, workers int) []results.Audit {
-	found := make([][]results.Audit, len(reports))
+func audits(plan *Plan, dir *results.Dir, workers int) ([]results.Audit, error) {
+	var cells [][]Unit
+	if err := eachCell(plan, func(_ int, units []Unit) error {
+		cells = append(cells, units)
+		return nil
+	}); err != nil {
+		return nil, err
+	}
+	found, faults := make([][]results.Audit, len(cells)), make([]error, len(cells))
 	queue := make(chan int)
 	var wait sync.WaitGroup
 	for range workers {
 		wait.Go(func() {
 			for c := range queue {
-				found[c] = reports[c].Audit(plan.Study.Seed)
+				var report *scoring.CellReport
+				if report, faults[c] = cellReport(plan, dir, cells[c]); faults[c] == nil {
+					found[c] = report.Audit(plan.Study.Seed)
+				}
 			}
 		})
 	}
-	for c := range reports {
+	for c := range cells {
 		queue <- c
 	}
 	close(queue)
@@ -88,5 +102,5 @@ func audits(plan *Plan, reports []*scoring.CellReport, workers int) []results.Au
 	for _, f := range found {
 		rows = append(rows, f...)
 	}
-	return rows
+	return rows, errors.Join(faults...)
 }
