@@ -134,7 +134,7 @@ var Rungs = &Table[Rung]{
 		{"cell", "", "key of the cell", func(r *Rung) any { return &r.Cell }},
 		{"smoother", "", "label of the smoother", func(r *Rung) any { return &r.Smoother }},
 		{"df", "df", "equivalent degrees of freedom asked for", func(r *Rung) any { return &r.DF }},
-		{"quantity", "", "train_mse, ase_train, heldout_same_x, heldout, excess, ase_heldout, gcv, loocv, kfold, cp, each of the last four less the held-out error (…_less_heldout), coverage, coverage_known, coverage_bayes", func(r *Rung) any { return &r.Quantity }},
+		{"quantity", "", "name of the figure; describe table rungs lists them", func(r *Rung) any { return &r.Quantity }},
 		{"mean", "quantity's own", "mean over the replicates in which it is known and finite", func(r *Rung) any { return &r.Mean }},
 		{"mcse", "quantity's own", "its Monte Carlo standard error", func(r *Rung) any { return &r.MCSE }},
 		{"replicates", "", "number of those replicates", func(r *Rung) any { return &r.Replicates }},

@@ -7,6 +7,7 @@ import (
 	"strings"
 
 	"github.com/jedib0t/go-pretty/v6/table"
+	"github.com/jedib0t/go-pretty/v6/text"
 	"github.com/spf13/cobra"
 
 	"bendtest/results"
@@ -111,21 +112,28 @@ func describeTable(w io.Writer, args []string) error {
 		t.AppendRow(table.Row{c.Column, c.Type, c.Unit, c.Description})
 	}
 	fmt.Fprintln(w, render(t))
-	if doc.Name == results.Summaries.Name {
-		fmt.Fprintln(w, "\nmeasures:")
+	switch doc.Name {
+	case results.Summaries.Name:
 		m := newTable("measure", "meaning")
 		for _, measure := range scoring.Measures() {
 			m.AppendRow(table.Row{measure.Name, measure.Doc})
 		}
-		fmt.Fprintln(w, render(m))
+		fmt.Fprintf(w, "\nmeasures:\n%s\n", render(m))
+	case results.Rungs.Name:
+		m := newTable("quantity", "meaning")
+		for _, figure := range scoring.FigureDocs() {
+			m.AppendRow(table.Row{figure.Name, figure.Doc})
+		}
+		fmt.Fprintf(w, "\nquantities:\n%s\n", render(m))
 	}
 	return nil
 }
 
-// newTable starts a table of text.
+// newTable starts a table of text, the last column of which is broken into lines.
 func newTable(head ...any) table.Writer {
 	t := table.NewWriter()
 	t.SetStyle(plainStyle())
+	t.SetColumnConfigs([]table.ColumnConfig{{Number: len(head), WidthMax: 80, WidthMaxEnforcer: text.WrapSoft}})
 	t.AppendHeader(head)
 	return t
 }
