@@ -49,7 +49,7 @@ var Fits = &Table[Fit]{
 		{"coverage_bayes", "", "the same with √S_ii in place of √(SSᵀ)_ii; smoothing and penalised splines only", func(r *Fit) any { return &r.CoverageBayes }},
 		{"line_p", "", "p-value of the test of the straight line within this rung; null where the rung is no more flexible or the test is not worked out", func(r *Fit) any { return &r.LineP }},
 		{"gcv", "y²", "(RSS/n)/(1 − t/n)², infinite where t ≥ n", func(r *Fit) any { return &r.GCV }},
-		{"loocv", "y²", "mean of (r_i/(1 − S_ii))²; neighbour widths and quantile knots are held", func(r *Fit) any { return &r.LOOCV }},
+		{"loocv", "y²", "mean of (r_i/(1 − S_ii))²; neighbour widths and quantile knots are held; infinite where an observation determines its own fit", func(r *Fit) any { return &r.LOOCV }},
 		{"kfold", "y²", "k-fold cross-validation, each fold refitted at the same df, with the study's first k; null without a kfold rule or where a fold cannot be fitted", func(r *Fit) any { return &r.KFold }},
 		{"kfold_se", "y²", "standard deviation of the fold means ÷ √k", func(r *Fit) any { return &r.KFoldSE }},
 		{"cp", "y²", "RSS/n + 2σ²t/n with the known noise variance σ²", func(r *Fit) any { return &r.CP }},
@@ -189,7 +189,7 @@ var Audits = &Table[Audit]{
 		{"expected", "quantity's own", "exact expectation; null where there is none", func(r *Audit) any { return &r.Expected }},
 		{"simulated", "quantity's own", "mean over replicates", func(r *Audit) any { return &r.Simulated }},
 		{"mcse", "quantity's own", "its Monte Carlo standard error", func(r *Audit) any { return &r.MCSE }},
-		{"z", "", "(simulated − expected)/mcse; null where either is missing or mcse is 0", func(r *Audit) any { return &r.Z }},
+		{"z", "", "(simulated − expected)/mcse; 0 where they agree to rounding; null with fewer than two replicates, and under errors whose squares have no variance, for which mcse means nothing", func(r *Audit) any { return &r.Z }},
 	},
 }
 

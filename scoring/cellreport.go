@@ -105,7 +105,7 @@ func (c *CellReport) Audit(seed uint64) []results.Audit {
 		expected := t.Expect(&rungs[j])
 		j++
 		for _, q := range audited() {
-			rows = appendAudit(rows, c.Key, e.Name, df, q, q.of(&expected), figures[q.figure])
+			rows = c.appendAudit(rows, e.Name, df, q, q.of(&expected), figures[q.figure])
 		}
 	})
 	return rows
@@ -130,18 +130,28 @@ func audited() []auditedFigure {
 	}
 }
 
-// appendAudit appends the row of one figure, if both theory and the simulation know it.
-func appendAudit(rows []results.Audit, cell, smoother string, df float64, q auditedFigure, expected results.Number, m Moment) []results.Audit {
+// appendAudit appends the row of one figure, if both theory and the simulation know it. What
+// agrees to rounding agrees, whatever its standard error: a fit through all readings has
+// residuals that are nothing else.
+func (c *CellReport) appendAudit(rows []results.Audit, smoother string, df float64, q auditedFigure, expected results.Number, m Moment) []results.Audit {
+	const rounding = 1e-12
 	v := m.Estimate()
 	if !expected.Known || !v.Value.Known {
 		return rows
 	}
 	row := results.Audit{
-		Cell: cell, Smoother: smoother, DF: df, Quantity: FigureDocs()[q.figure].Name,
+		Cell: c.Key, Smoother: smoother, DF: df, Quantity: FigureDocs()[q.figure].Name,
 		Expected: expected, Simulated: v.Value, MCSE: v.MCSE,
 	}
-	if v.MCSE.Known && v.MCSE.Value > 0 {
-		row.Z = finite((v.Value.Value - expected.Value) / v.MCSE.Value)
+	off := v.Value.Value - expected.Value
+	switch {
+	case math.Abs(off) <= rounding*max(math.Abs(expected.Value), c.Cell.NoiseVariance):
+		row.Z = results.Num(0)
+	case c.Cell.HeavyTails(): // the standard error means nothing
+	case v.MCSE.Known && v.MCSE.Value > 0:
+		row.Z = finite(off / v.MCSE.Value)
+	case v.MCSE.Known: // it does not vary, and it is another
+		row.Z = results.Num(math.Copysign(math.Inf(1), off))
 	}
 	return append(rows, row)
 }

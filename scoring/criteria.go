@@ -17,6 +17,10 @@ func GCV(n int, rss, t, gamma float64) float64 {
 	return rss / float64(n) / (free * free)
 }
 
+// ownFit is the 1 − S_ii below which an observation determines its own fit: a residual
+// divided by less would be more rounding than figure.
+const ownFit = 1e-9
+
 // LOOCV is leave-one-out cross-validation by the short cut
 // (1/n) Σ (r_i / (1 − S_ii))², with residuals r and remainder 1 − S_ii, both of
 // length n. It equals refitting without each point wherever the tuning means the
@@ -28,7 +32,7 @@ func LOOCV(residual, remainder []float64) float64 {
 	}
 	sum := 0.0
 	for i, r := range residual {
-		if !(remainder[i] > 0) {
+		if !(remainder[i] >= ownFit) {
 			return math.Inf(1)
 		}
 		d := r / remainder[i]

@@ -22,7 +22,7 @@ const mostTheory = 500
 //	ase     mean of b_i² + |(SA)_i|²
 //	same x  ase + mean noise variance at the training x
 //	heldout noise variance + E (l(X)ᵀf − f(X))² + |Aᵀl(X)|²
-//	loocv   mean of (b_i² + |((I−S)A)_i|²)/(1 − S_ii)²
+//	loocv   mean of (b_i² + |((I−S)A)_i|²)/(1 − S_ii)², none where a point determines its own fit
 //	cp      train + 2σ² tr S/n
 //
 // for any law of the errors; A_i stands for row i. Coverage of the band with known σ is
@@ -74,6 +74,7 @@ func (t *Theory) Expect(r *smoothers.Rung) Expectation {
 		r.Fit(t.root[k], &t.columns[k])
 	}
 	var train, ase, loocv, inside float64
+	alone := false // a point determines its own fit
 	for i, f := range t.f {
 		bias := t.mean.Fitted[i] - f
 		var noise, rest float64
@@ -84,12 +85,13 @@ func (t *Theory) Expect(r *smoothers.Rung) Expectation {
 		}
 		train += (bias*bias + rest) / n
 		ase += (bias*bias + noise) / n
+		alone = alone || !(r.Remainder[i] >= ownFit)
 		loocv += (bias*bias + rest) / (r.Remainder[i] * r.Remainder[i]) / n
 		inside += t.inside(bias, math.Sqrt(noise), r.RowNorm2[i]) / n
 	}
 	e.Train, e.ASE, e.SameX = results.Num(train), results.Num(ase), results.Num(ase+t.sameX)
 	e.CP = results.Num(train + 2*t.cell.NoiseVariance*r.TrS/n)
-	if !math.IsNaN(loocv) && !math.IsInf(loocv, 0) {
+	if !alone {
 		e.LOOCV = results.Num(loocv)
 	}
 	if t.cell.NormalErrors() {

@@ -351,6 +351,34 @@ func TestTheAuditCatchesAWrongSimulation(t *testing.T) {
 	}
 }
 
+// Squares of Student errors on 3 df have no variance, so that z would be no measure.
+func TestHeavyTailsAreNotJudged(t *testing.T) {
+	sd := 0.3
+	for nu, judged := range map[float64]bool{3: false, 4: false, 9: true} {
+		cell := waveCell(t, 20, 200, &sim.Noise{Law: &sim.StudentNoise{Nu: nu}, SD: &sd})
+		c := &Contest{Entrants: []Entrant{{Name: "s", Smoother: smoothers.NewSmoothingSpline(), DF: []float64{5}}}}
+		if _, of := Agreement(auditOf(cell, c, 50, nil)); (of > 0) != judged {
+			t.Errorf("nu = %g: %d figures judged", nu, of)
+		}
+	}
+}
+
+// A fit through all readings leaves rounding, which agrees with 0, and no LOOCV.
+func TestTheAuditOfAFitThroughAllReadings(t *testing.T) {
+	cell := waveCell(t, 8, 200, nil)
+	c := &Contest{Entrants: []Entrant{{Name: "p", Smoother: smoothers.NewPolynomial(), DF: []float64{8}}}}
+	seen := map[string]float64{}
+	for _, r := range auditOf(cell, c, 200, nil) {
+		seen[r.Quantity] = r.Z.Value
+	}
+	if z, there := seen["train_mse"]; !there || z != 0 {
+		t.Errorf("training error of nothing: z = %g (%v)", z, there)
+	}
+	if _, there := seen["loocv"]; there {
+		t.Error("LOOCV of points that determine their own fit")
+	}
+}
+
 func ExampleAgreement() {
 	rows := []results.Audit{{Z: results.Num(-1.2)}, {Z: results.Num(4.5)}, {}}
 	fmt.Println(Agreement(rows))

@@ -47,6 +47,13 @@ func (c *Cell) NormalErrors() bool {
 	return ok
 }
 
+// HeavyTails reports whether squared errors have no variance, as with Student's t on 4
+// degrees of freedom and fewer: means of them then have no standard error to speak of.
+func (c *Cell) HeavyTails() bool {
+	law, ok := c.Noise.Law.(*StudentNoise)
+	return ok && law.Nu <= 4
+}
+
 // WhiteErrors reports whether the errors are independent and of one variance.
 func (c *Cell) WhiteErrors() bool { return c.Noise.AR1 == 0 && c.Noise.Scale == nil }
 

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"io"
 	"strings"
+	"unicode/utf8"
 
 	"github.com/jedib0t/go-pretty/v6/table"
 	"github.com/jedib0t/go-pretty/v6/text"
@@ -98,13 +99,38 @@ func printTies(w io.Writer, v *verdict, mean int) {
 		}
 	}
 	if len(tied) > 0 {
-		fmt.Fprintf(w, "  Tied with it within the indifference margin of %s: %s.\n", share(v.margin), strings.Join(tied, ", "))
+		fmt.Fprint(w, listed(fmt.Sprintf("Tied with it within the indifference margin of %s: ", share(v.margin)), tied))
 	} else {
 		fmt.Fprintf(w, "  No other method is within the indifference margin of %s on average.\n", share(v.margin))
 	}
 	if len(unsure) > 0 {
-		fmt.Fprintf(w, "  With more replicates these may turn out tied, too: %s.\n", strings.Join(unsure, ", "))
+		fmt.Fprint(w, listed("With more replicates these may turn out tied, too: ", unsure))
 	}
+}
+
+// listed writes a few of the names, indented, in lines of readable length.
+func listed(start string, names []string) string {
+	const most = 6
+	more := ""
+	if len(names) > most {
+		more = fmt.Sprintf(" and %d more", len(names)-most)
+		names = names[:most]
+	}
+	var b strings.Builder
+	line := "  " + start
+	for i, name := range names {
+		word := name + ","
+		if i == len(names)-1 {
+			word = name + more + "."
+		}
+		if utf8.RuneCountInString(line)+utf8.RuneCountInString(word) > 100 {
+			b.WriteString(strings.TrimRight(line, " ") + "\n")
+			line = "    "
+		}
+		line += word + " "
+	}
+	b.WriteString(strings.TrimRight(line, " ") + "\n")
+	return b.String()
 }
 
 // interval writes a share with its interval.
