@@ -17,10 +17,9 @@ func printVerdict(w io.Writer, v *verdict) {
 	if len(v.methods) == 0 {
 		fmt.Fprintln(w, "No method has a pick in any cell: there is nothing to judge.")
 	} else {
-		fmt.Fprintf(w, "%s judged in %s. Excess is how far the held-out error lies above the noise\nfloor; behind is a method's excess against the best method of the same cell.\n\n",
-			counted(len(v.methods), "method"), counted(len(v.cells), "cell"))
 		printWinners(w, v)
-		fmt.Fprintln(w)
+		fmt.Fprintf(w, "\n%s judged in %s. Excess is how far the held-out error lies above the noise\nfloor; behind is a method's excess against the best method of the same cell.\n\n",
+			counted(len(v.methods), "method"), counted(len(v.cells), "cell"))
 		fmt.Fprintln(w, methodTable(v))
 		fmt.Fprintln(w, "\n"+"In brackets: 95 % intervals for the Monte Carlo error. Rank 1 is the best method of a cell.\n◂ least on average, ◃ least in its worst cell, = tied with the least on average")
 	}
