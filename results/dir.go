@@ -18,14 +18,16 @@ const (
 	partsFolder  = "parts"
 	tablesFolder = "tables"
 	lockFile     = "lock"
+	taskFiles    = "task-" // begins the names of the manifests of tasks
 )
 
 // A Dir is a run directory. Methods may be called from several goroutines unless
 // they say otherwise.
 type Dir struct {
-	path string
-	disk disk
-	lock *lock
+	path     string
+	disk     disk
+	lock     *lock
+	manifest string // name of the manifest that this process writes
 }
 
 // A ForeignDirError says that a directory holds something else than a run.
@@ -48,6 +50,26 @@ func (e *LockedError) Error() string {
 func Create(path string) (*Dir, error) { return create(path, osDisk{}) }
 
 func create(path string, on disk) (*Dir, error) {
+	d, err := enter(path, on, manifestFile, false)
+	if err != nil {
+		return nil, err
+	}
+	if err := sweepTemporaries(path); err != nil {
+		d.Close()
+		return nil, err
+	}
+	return d, nil
+}
+
+// Join opens a run directory for one task among several processes that write different
+// parts to it at the same time. Each keeps a manifest of its own; none may write tables.
+// Errors are those of Create.
+func Join(path, task string) (*Dir, error) {
+	return enter(path, osDisk{}, taskFiles+task+".json", true)
+}
+
+// enter makes a run directory if need be and locks it.
+func enter(path string, on disk, manifest string, shared bool) (*Dir, error) {
 	if err := checkForeign(path); err != nil {
 		return nil, err
 	}
@@ -56,18 +78,14 @@ func create(path string, on disk) (*Dir, error) {
 			return nil, err
 		}
 	}
-	held, err := takeLock(filepath.Join(path, lockFile))
+	held, err := takeLock(filepath.Join(path, lockFile), shared)
 	if errors.Is(err, errLocked) {
 		return nil, &LockedError{path}
 	}
 	if err != nil {
 		return nil, err
 	}
-	if err := sweepTemporaries(path); err != nil {
-		held.release()
-		return nil, err
-	}
-	return &Dir{path: path, disk: on, lock: held}, nil
+	return &Dir{path: path, disk: on, lock: held, manifest: manifest}, nil
 }
 
 // checkForeign refuses a directory that is neither empty nor a run.
@@ -83,9 +101,9 @@ func checkForeign(path string) error {
 		switch e.Name() {
 		case manifestFile:
 			return nil
-		case lockFile, partsFolder, tablesFolder: // a run that was killed at its very start
+		case lockFile, partsFolder, tablesFolder, studyFile: // a run that was killed at its very start
 		default:
-			if !strings.HasPrefix(e.Name(), manifestFile+temporary) {
+			if !strings.HasPrefix(e.Name(), manifestFile+temporary) && !strings.HasPrefix(e.Name(), studyFile+temporary) && !strings.HasPrefix(e.Name(), taskFiles) {
 				return &ForeignDirError{path}
 			}
 		}
@@ -95,10 +113,11 @@ func checkForeign(path string) error {
 
 // Open opens a run directory for reading.
 func Open(path string) (*Dir, error) {
-	if _, err := os.Stat(filepath.Join(path, manifestFile)); err != nil {
+	_, err := os.Stat(filepath.Join(path, manifestFile))
+	if tasks, _ := filepath.Glob(filepath.Join(path, taskFiles+"*.json")); err != nil && len(tasks) == 0 {
 		return nil, fmt.Errorf("%s is not a run directory: %w", path, err)
 	}
-	return &Dir{path: path, disk: osDisk{}}, nil
+	return &Dir{path: path, disk: osDisk{}, manifest: manifestFile}, nil
 }
 
 // Close lets go of the lock.

@@ -15,14 +15,18 @@ var errLocked = errors.New("locked by another process")
 // process ends, however it ends.
 type lock struct{ file *os.File }
 
-// takeLock locks a file, making it if need be. The error is errLocked if another
-// process holds it.
-func takeLock(path string) (*lock, error) {
+// takeLock locks a file, making it if need be: for this process alone, or shared with
+// others that share it. The error is errLocked if another process holds it otherwise.
+func takeLock(path string, shared bool) (*lock, error) {
+	how := unix.LOCK_EX
+	if shared {
+		how = unix.LOCK_SH
+	}
 	f, err := os.OpenFile(path, os.O_CREATE|os.O_RDWR, 0o644)
 	if err != nil {
 		return nil, err
 	}
-	err = unix.Flock(int(f.Fd()), unix.LOCK_EX|unix.LOCK_NB)
+	err = unix.Flock(int(f.Fd()), how|unix.LOCK_NB)
 	if errors.Is(err, unix.EWOULDBLOCK) {
 		err = errLocked
 	}

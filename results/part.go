@@ -188,6 +188,23 @@ func (d *Dir) loadPart(key string) (streams, error) {
 	return found, nil
 }
 
+// CopyPart brings the part with a key from another run directory, intact or not at all. It
+// reports whether it is there.
+func (d *Dir) CopyPart(key string, from *Dir) (bool, error) {
+	there, err := from.CheckPart(key)
+	if !there || err != nil {
+		return false, err
+	}
+	data, err := os.ReadFile(from.partPath(key))
+	if err != nil {
+		return false, err
+	}
+	return true, commit(d.disk, d.partPath(key), func(w io.Writer) error {
+		_, err := w.Write(data)
+		return err
+	})
+}
+
 // A PartReader takes the rows of parts, in order; a row is overwritten by the next. Rows
 // that no function is there for are not unpacked.
 type PartReader struct {

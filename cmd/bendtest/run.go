@@ -7,6 +7,7 @@ import (
 	"io"
 	"path/filepath"
 	"runtime"
+	"strconv"
 	"strings"
 
 	"github.com/spf13/cobra"
@@ -21,6 +22,7 @@ func runCommand() *cobra.Command {
 		out     string
 		workers int
 		seed    uint64
+		part    string
 		quiet   bool
 	)
 	cmd := &cobra.Command{
@@ -31,10 +33,14 @@ write the tables DIR/tables/*.parquet. Without a file it runs the embedded
 demonstration study. Running the same command again resumes: what is there and
 intact is kept. The tables do not depend on the number of workers.
 
+With --part K/N only every N-th unit of work is done, for several processes or machines
+that share DIR, or have one each; bendtest gather then makes the tables.
+
 The first interrupt finishes the units in hand and stops (exit code 3); the second
 stops at once.`,
 		Example: `  bendtest run
-  bendtest run night.toml -o night --workers 4`,
+  bendtest run night.toml -o night --workers 4
+  bendtest run night.toml -o night --part 2/8`,
 		Args: between(0, 1),
 		RunE: func(cmd *cobra.Command, args []string) error {
 			if workers < 1 {
@@ -55,15 +61,46 @@ stops at once.`,
 			if out == "" {
 				out = defaultDir(path)
 			}
-			job := sweep.Job{Study: study, Dir: out, Workers: workers, Build: build()}
+			share, err := parseShare(part)
+			if err != nil {
+				return err
+			}
+			job := sweep.Job{Study: study, File: absolute(path), Dir: out, Workers: workers, Build: build(), Share: share}
 			return runJob(cmd.Context(), job, quiet, cmd.OutOrStdout(), cmd.ErrOrStderr())
 		},
 	}
 	cmd.Flags().StringVarP(&out, "output", "o", "", "`DIR` for tables and parts (default bendtest-NAME after the study)")
 	cmd.Flags().IntVar(&workers, "workers", runtime.NumCPU(), "`N` units worked at the same time")
 	cmd.Flags().Uint64Var(&seed, "seed", 0, "`S` in place of the study's seed")
+	cmd.Flags().StringVar(&part, "part", "", "`K/N`: work only the K-th of N shares of the units")
 	cmd.Flags().BoolVar(&quiet, "quiet", false, "no progress and no closing tables")
 	return cmd
+}
+
+// parseShare reads K/N.
+func parseShare(text string) (sweep.Share, error) {
+	if text == "" {
+		return sweep.Share{}, nil
+	}
+	k, n, found := strings.Cut(text, "/")
+	part, errK := strconv.Atoi(k)
+	of, errN := strconv.Atoi(n)
+	if !found || errK != nil || errN != nil || part < 1 || part > of {
+		return sweep.Share{}, refuse("--part %q; want K/N with K from 1 to N, such as 2/8", text)
+	}
+	return sweep.Share{Part: part, Of: of}, nil
+}
+
+// absolute is a path that another working directory understands too; the embedded study
+// has none.
+func absolute(path string) string {
+	if path == "" {
+		return ""
+	}
+	if full, err := filepath.Abs(path); err == nil {
+		return full
+	}
+	return path
 }
 
 // defaultDir names the run directory after the study file.
@@ -98,6 +135,11 @@ func runJob(ctx context.Context, job sweep.Job, quiet bool, stdout, stderr io.Wr
 		return fmt.Errorf("%w with everything so far kept in %s; run the same command again to go on", errStopped, job.Dir)
 	}
 	if quiet {
+		return nil
+	}
+	if s := job.Share; s.Of > 0 {
+		fmt.Fprintf(stdout, "Part %d of %d is done: %s. When all are, bendtest gather %s makes the tables.\n",
+			s.Part, s.Of, counted(outcome.Kept+outcome.Worked, "unit"), job.Dir)
 		return nil
 	}
 	return printOutcome(stdout, job.Dir)

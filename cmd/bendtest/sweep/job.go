@@ -5,6 +5,7 @@ import (
 	"crypto/sha256"
 	"encoding/hex"
 	"errors"
+	"fmt"
 	"io/fs"
 	"os"
 	"runtime"
@@ -17,15 +18,45 @@ import (
 // A Job is a study to run into a directory.
 type Job struct {
 	Study   *scenarios.Study
+	File    string // where the study was read from, absolute, or empty
 	Dir     string
 	Workers int
 	Build   string // identifies the build of the program
+	Share   Share
 }
 
-// Run works what is missing, gathers the tables and keeps the manifest. It refuses a
-// directory as results.Create does.
+// A Share is one of several tasks that a study is split into: every Of-th unit, starting
+// with the Part-th. The zero value is the whole study.
+type Share struct{ Part, Of int }
+
+// whole reports whether the share is everything.
+func (s Share) whole() bool { return s.Of == 0 }
+
+// of returns the units of the share.
+func (s Share) of(units []Unit) []Unit {
+	if s.whole() {
+		return units
+	}
+	var mine []Unit
+	for i := s.Part - 1; i < len(units); i += s.Of {
+		mine = append(mine, units[i])
+	}
+	return mine
+}
+
+// open opens the job's directory: for itself, or together with other tasks.
+func (j *Job) open() (*results.Dir, error) {
+	if j.Share.whole() {
+		return results.Create(j.Dir)
+	}
+	return results.Join(j.Dir, fmt.Sprintf("%d-of-%d", j.Share.Part, j.Share.Of))
+}
+
+// Run works what is missing of its share and keeps the manifest. The whole study has its
+// tables gathered at once, a share leaves that to a Collection. Run refuses a directory
+// as results.Create does.
 func (j *Job) Run(ctx context.Context, watch Observer) (Report, error) {
-	dir, err := results.Create(j.Dir)
+	dir, err := j.open()
 	if err != nil {
 		return Report{}, err
 	}
@@ -35,8 +66,8 @@ func (j *Job) Run(ctx context.Context, watch Observer) (Report, error) {
 		return Report{}, err
 	}
 	plan := NewPlan(j.Study, j.Build)
-	report, err := Run(ctx, plan, dir, j.Workers, watch)
-	if err == nil && !report.Stopped {
+	report, err := Run(ctx, plan, dir, j.Share.of(plan.Units), j.Workers, watch)
+	if err == nil && !report.Stopped && j.Share.whole() {
 		err = j.gather(plan, dir, manifest, &report)
 	}
 	start := &manifest.Starts[len(manifest.Starts)-1]
@@ -64,18 +95,10 @@ func (j *Job) begin(dir *results.Dir) (*results.Manifest, error) {
 	if err != nil {
 		return nil, err
 	}
-	sum := sha256.Sum256(j.Study.Source)
-	manifest.SchemaVersion = results.SchemaVersion
-	manifest.Study, manifest.StudyHash = j.Study.Title, hex.EncodeToString(sum[:])
-	manifest.Seed = j.Study.Seed
-	host, err := os.Hostname()
-	if err != nil {
-		host = "unknown"
-	}
-	manifest.Starts = append(manifest.Starts, results.Start{
-		Version: j.Build, Go: runtime.Version(), Host: host, System: runtime.GOOS + "/" + runtime.GOARCH,
-		Workers: j.Workers, Began: time.Now().UTC().Format(time.RFC3339),
-	})
+	starts, parts := manifest.Starts, manifest.Parts
+	*manifest = *newManifest(j.Study)
+	manifest.StudyFile, manifest.Parts = j.File, parts
+	manifest.Starts = append(starts, newStart(j.Build, j.Workers))
 	if err := dir.WriteManifest(manifest); err != nil {
 		return nil, err
 	}
@@ -92,9 +115,26 @@ func (j *Job) gather(plan *Plan, dir *results.Dir, manifest *results.Manifest, r
 			return err
 		}
 	}
-	manifest.Parts = manifest.Parts[:0]
-	for _, u := range plan.Units {
-		manifest.Parts = append(manifest.Parts, u.Key)
-	}
+	manifest.Parts = plan.keys()
 	return nil
+}
+
+// newManifest describes a study.
+func newManifest(study *scenarios.Study) *results.Manifest {
+	sum := sha256.Sum256(study.Source)
+	return &results.Manifest{
+		SchemaVersion: results.SchemaVersion, Study: study.Title, StudyHash: hex.EncodeToString(sum[:]), Seed: study.Seed,
+	}
+}
+
+// newStart describes this process.
+func newStart(build string, workers int) results.Start {
+	host, err := os.Hostname()
+	if err != nil {
+		host = "unknown"
+	}
+	return results.Start{
+		Version: build, Go: runtime.Version(), Host: host, System: runtime.GOOS + "/" + runtime.GOARCH,
+		Workers: workers, Began: time.Now().UTC().Format(time.RFC3339),
+	}
 }

@@ -49,6 +49,15 @@ func NewPlan(study *scenarios.Study, version string) *Plan {
 	return p
 }
 
+// keys names the parts of the plan, in order.
+func (p *Plan) keys() []string {
+	keys := make([]string, len(p.Units))
+	for i, u := range p.Units {
+		keys[i] = u.Key
+	}
+	return keys
+}
+
 // The levels of keep in a study: the largest tables that are wanted.
 const (
 	keepFits    = "fits"

@@ -30,11 +30,11 @@ type Observer interface {
 	Done(fits, failures int)
 }
 
-// Run works all units of the plan that have no intact part in dir, on the given
-// number of workers. When ctx ends, units in hand are finished and Report.Stopped
+// Run works those of the given units of the plan that have no intact part in dir, on the
+// given number of workers. When ctx ends, units in hand are finished and Report.Stopped
 // is set. The first fault ends the sweep likewise and is returned.
-func Run(ctx context.Context, plan *Plan, dir *results.Dir, workers int, watch Observer) (Report, error) {
-	todo, report, err := survey(plan, dir)
+func Run(ctx context.Context, plan *Plan, dir *results.Dir, units []Unit, workers int, watch Observer) (Report, error) {
+	todo, report, err := survey(units, dir)
 	if err != nil {
 		return report, err
 	}
@@ -88,8 +88,8 @@ func Run(ctx context.Context, plan *Plan, dir *results.Dir, workers int, watch O
 }
 
 // survey finds the units that are still to be worked.
-func survey(plan *Plan, dir *results.Dir) (todo []Unit, report Report, err error) {
-	for _, u := range plan.Units {
+func survey(units []Unit, dir *results.Dir) (todo []Unit, report Report, err error) {
+	for _, u := range units {
 		there, err := dir.CheckPart(u.Key)
 		var broken *results.BrokenPartError
 		switch {

@@ -129,7 +129,7 @@ func TestAPanicEndsTheSweepAndNamesItsUnit(t *testing.T) {
 	}
 	defer dir.Close()
 	watch := &counter{}
-	report, err := Run(context.Background(), plan, dir, 1, watch)
+	report, err := Run(context.Background(), plan, dir, plan.Units, 1, watch)
 	var fault *PanicError
 	if !errors.As(err, &fault) || fault.Cell != "a/a/a/n=20" || len(fault.Stack) == 0 || !strings.Contains(err.Error(), "replicates 0 to 9: a bug") {
 		t.Errorf("error = %v", err)
