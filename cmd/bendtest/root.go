@@ -40,7 +40,7 @@ was done, 3 stopped by a signal with everything so far kept.`,
 	root.SetFlagErrorFunc(func(cmd *cobra.Command, err error) error {
 		return refuse("%w (see %q)", err, cmd.CommandPath()+" --help")
 	})
-	root.AddCommand(runCommand(), planCommand(), gatherCommand(), fitCommand(), verdictCommand(), exportCommand(), describeCommand(), versionCommand())
+	root.AddCommand(runCommand(), planCommand(), gatherCommand(), arrayCommand(), fitCommand(), verdictCommand(), exportCommand(), describeCommand(), versionCommand())
 	return root
 }
 
