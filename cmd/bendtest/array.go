@@ -67,7 +67,7 @@ func (b batchScript) write(w io.Writer) error {
 # in %[4]d tasks that share %[2]s.
 #
 #   job=$(sbatch --parsable THIS)        # all tasks; scancel, requeue and resubmit as you like
-#   sbatch --dependency=afterok:$job --wrap='%[3]s gather %[2]s'
+#   sbatch --dependency=afterok:$job --wrap="%[3]s gather %[2]s"
 #
 #SBATCH --job-name=bendtest
 #SBATCH --array=1-%[4]d
