@@ -48,7 +48,7 @@ type ladderTests struct {
 	n        int
 	general  bool // whether the line is tested where S is general
 	adjacent bool // whether neighbouring rungs are to be compared
-	full     bool // whether S is worked out where it has to be
+	full     bool // whether S is worked out for that where it has to be
 	line     [2][]float64
 	matrix   []float64   // n × n
 	unit     []float64   // n
@@ -62,7 +62,7 @@ type ladderTests struct {
 func (t *ladderTests) lay(rungs []smoothers.Rung, x []float64, general, adjacent bool) {
 	t.rungs = regrow(t.rungs, len(rungs))
 	t.n, t.general, t.adjacent = len(x), general, adjacent
-	t.full = general || adjacent && t.n <= mostGeneral
+	t.full = t.n <= mostGeneral
 	straight := t.setLine(x)
 	t.q = regrow(t.q, len(rungs))
 	for j := range rungs {
@@ -118,19 +118,15 @@ func (t *ladderTests) rung(j int, r *smoothers.Rung, straight bool) {
 	w := &t.rungs[j]
 	w.delta1 = r.DFResidual
 	w.delta2, w.known = r.ResidualQuartic()
-	w.neighbours = w.spread
-	general := r.Form == smoothers.General
-	switch {
-	case t.full && general && !t.adjacent:
-		w.neighbours = spread{w.delta1, t.square(r), true}
-	case t.full && general:
-		t.form(j, r)
-		w.neighbours = spread{w.delta1, t.inner(j, j), true}
-	case t.full && t.adjacent && r.Form == smoothers.Projection:
-		t.form(j, r)
+	if r.Form == smoothers.General && t.general {
+		w.delta2, w.known = t.square(r), true
 	}
-	if t.general {
-		w.spread = w.neighbours
+	w.neighbours = w.spread
+	if t.adjacent && t.full && (r.Form == smoothers.General || r.Form == smoothers.Projection) {
+		t.form(j, r)
+		if r.Form == smoothers.General {
+			w.neighbours = spread{w.delta1, t.inner(j, j), true}
+		}
 	}
 	if !straight || !w.known {
 		return

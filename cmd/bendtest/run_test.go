@@ -130,15 +130,17 @@ func TestAdditionsLeaveEarlierRowsUnchanged(t *testing.T) {
 		"truth":    strings.Replace(smallStudy, "[truth.bend]", "[truth.another]\nf = \"exp(x)\"\n[truth.bend]", 1),
 		"smoother": strings.Replace(smallStudy, "[[smoother]]", "[[smoother]]\nfamily = \"kernel\"\nkernel = \"tricube\"\ndf = \"3..6\"\n[[smoother]]", 1),
 		"rule":     strings.Replace(smallStudy, "[[rule]]", "[[rule]]\nkind = \"aicc\"\n[[rule]]", 1),
+		"test":     strings.Replace(smallStudy, "[[rule]]", "[[rule]]\nkind = \"ftest\"\n[[rule]]", 1),
 	} {
 		after := runStudy(t, text)
-		stays(t, name, before, after, results.Fits, name != "rule")
+		grows := name != "rule" && name != "test"
+		stays(t, name, before, after, results.Fits, grows)
 		stays(t, name, before, after, results.Picks, true)
 		stays(t, name, before, after, results.Summaries, true)
-		stays(t, name, before, after, results.Rungs, name != "rule")
-		stays(t, name, before, after, results.Curves, name != "rule")
-		stays(t, name, before, after, results.Tests, name != "rule")
-		stays(t, name, before, after, results.Audits, name != "rule")
+		stays(t, name, before, after, results.Rungs, grows)
+		stays(t, name, before, after, results.Curves, grows)
+		stays(t, name, before, after, results.Tests, grows)
+		stays(t, name, before, after, results.Audits, grows)
 	}
 }
 
