@@ -6,5 +6,6 @@
 // study and the seed alone, and parts are gathered in the order of the plan, so the
 // tables are the same to the byte for any number of workers and any interruption.
 // A part's name is a hash of all that its rows depend on: running again keeps the
-// parts that are there and intact, and works only what is missing.
+// parts that are there and intact, and works only what is missing. Several processes
+// may each work a Share of the units; a Collection then makes the tables.
 package sweep
